@@ -1,0 +1,155 @@
+"""One call of solve_ivp: every accepted step recorded, checked and searched for events.
+
+solve_ivp could search for events itself. It takes a third of the time of a history for it,
+and evaluates every event function where the quantities are known already; so the events
+are looked for here, where each accepted step is recorded, on the same interpolant.
+"""
+
+import numpy as np
+
+from evolve.integrate.solver import IMPLICIT, CoreEquations, Halt, all_finite, guarded, tolerances
+
+
+class Course:
+    """A stretch on its way.
+
+    Parameters
+    ----------
+    run : evolve.integrate.run.Run
+    stretch : TimeStretch or InspiralStretch
+    watches : list of Watch
+
+    Attributes
+    ----------
+    noted : list of (Watch, int, float)
+        Events that changed nothing, the row that holds each, what was left of g there.
+    fired : (Watch, int, float) or None
+        The terminal event that ended the stretch.
+    halt : Halt or None
+        The fault that ended it.
+    first_row : int
+        Index of the first row that belongs to it.
+    """
+
+    def __init__(self, run, stretch, watches):
+        self.run, self.stretch, self.watches = run, stretch, watches
+        self.numerics, self.recorder = run.numerics, run.recorder
+        self.noted, self.fired, self.halt = [], None, None
+        self.first_row = len(self.recorder)
+        self.spent = run.evaluations
+        self.values = self._watch_values(
+            stretch.time(stretch.start, stretch.state),
+            stretch.quantities(stretch.start, stretch.state),
+        )
+
+    def follow(self, bound):
+        """Integrate to `bound` or the first terminal event; the solver's complaint or ""."""
+        from scipy.integrate import solve_ivp
+
+        stretch, method = self.stretch, self.numerics["method"]
+        core = self.run.pair.layout.core
+        floor = [
+            1e-9 * abs(x) + name.startswith(("ln_", "ecc"))
+            for name, x in zip(core, stretch.state, strict=False)
+        ]
+        equations = CoreEquations(stretch.right_side, floor)
+        atol = stretch.atol(self.numerics["rtol"])
+        if self.numerics["atol"] is not None:
+            atol[: len(core)] = self.numerics["atol"]
+        rtol, atol = tolerances(self.numerics["rtol"], atol, len(core), method)
+        options = {"jac": equations.jacobian} if method in IMPLICIT else {}
+        if self.numerics["max_step"] is not None and not stretch.inspiral:
+            options["max_step"] = self.numerics["max_step"]
+        solution = solve_ivp(
+            equations.right_side, (stretch.start, bound), stretch.state,
+            method=guarded(method, self), rtol=rtol, atol=atol, **options,
+        )  # fmt: skip
+        self.run.evaluations = self.spent + solution.nfev
+        return solution.message if solution.status < 0 else ""
+
+    # Called by the guarded method --------------------------------------------------------
+
+    def before(self, solver):
+        """A Halt if the next step must not be taken."""
+        self.x_before = solver.t
+        if self.spent + solver.nfev > self.numerics["max_evaluations"]:
+            spent = self.spent + solver.nfev
+            self.halt = Halt("step_limit", f"{spent} evaluations of the equations were spent")
+        return self.halt
+
+    def accept(self, solver):
+        """Record an accepted step and note its events; true if the stretch ends here."""
+        x, state = solver.t, solver.y
+        if not all_finite(state):
+            self.halt = Halt("non_finite", "the state became NaN or infinite")
+        elif bad := self._out_of_bounds(state):
+            self.halt = Halt("domain", f"{bad} left the range in which the equations hold")
+        if self.halt:
+            return True
+        stretch, run = self.stretch, self.run
+        time, quantities = stretch.time(x, state), stretch.quantities(x, state)
+        before, self.values = self.values, self._watch_values(time, quantities)
+        crossed = [
+            order
+            for order, (old, new) in enumerate(zip(before, self.values, strict=True))
+            if (old < 0.0 <= new or old > 0.0 >= new)
+            and self.watches[order].direction * (new - old) >= 0.0
+        ]
+        if crossed:
+            self._cross(solver, before, crossed)
+        run.steps += 1
+        if self.fired:
+            return True
+        self.recorder.add(time, stretch.kept(state), quantities)
+        if run.progress:
+            run.progress(time, run.end["time"], run.regime, run.steps)
+        return False
+
+    def _watch_values(self, time, quantities):
+        return [watch.g(time, quantities) for watch in self.watches]
+
+    def _out_of_bounds(self, state):
+        mass_a, mass_b, momentum = state[:3].tolist()
+        if not (mass_a > 0.0 and mass_b > 0.0 and momentum > 0.0):
+            return "a mass or the angular momentum"
+        for slot, name in enumerate(self.run.pair.layout.core[3:], 3):
+            if name.startswith("ln_") and not -20.0 < state[slot] < 15.0:
+                return name
+        return ""
+
+    # Events ------------------------------------------------------------------------------
+
+    def _cross(self, solver, before, crossed):
+        """Find the events of one step on its interpolant; note them up to a terminal one."""
+        solver.t_old = self.x_before
+        interpolant = solver.dense_output()
+        found = sorted(
+            (self._root(interpolant, order, before[order], solver.t), order) for order in crossed
+        )
+        for x, order in found:
+            watch, state = self.watches[order], np.array(interpolant(x))
+            time, quantities = self.stretch.time(x, state), self.stretch.quantities(x, state)
+            row = self.recorder.add(time, self.stretch.kept(state), quantities)
+            event = (watch, row, watch.g(time, quantities))
+            if watch.terminal:
+                self.fired = event
+                return
+            self.noted.append(event)
+
+    def _root(self, interpolant, order, start, high):
+        from scipy.optimize import brentq
+
+        stretch, watch = self.stretch, self.watches[order]
+        low, end = self.x_before, self.values[order]
+        ends = {low: start, high: end}
+
+        def g(x):
+            if x in ends:
+                return ends[x]
+            state = np.array(interpolant(x))
+            return watch.g(stretch.time(x, state), stretch.quantities(x, state))
+
+        if start * end > 0.0 or end == 0.0:
+            return high
+        digits = 4e-16 * max(abs(low), abs(high))
+        return brentq(g, low, high, xtol=max(digits, 1e-12 * (high - low)), rtol=1e-15)

@@ -1,0 +1,272 @@
+"""Chapter after chapter from the start of a history to its end."""
+
+from math import log, pi
+from typing import NamedTuple
+
+import numpy as np
+
+from evolve.integrate.course import Course
+from evolve.integrate.outcomes import sentence
+from evolve.integrate.recorder import Recorder
+from evolve.integrate.stretch import InspiralStretch, TimeStretch
+from evolve.integrate.watches import CONTACT_MARGIN, WAKE, period_rate, watches_for
+from evolve.system.equations import OTHER
+
+CHATTER = 25
+"""So many events in a row without time passing between them are a fault, not a history."""
+
+
+class Mark(NamedTuple):
+    """An event: the row that holds it, and what was left of the event function there."""
+
+    name: str
+    component: str
+    row: int
+    residual: float
+
+
+class Opening(NamedTuple):
+    """The first row of a chapter, the regime that starts there, the event that opened it."""
+
+    row: int
+    regime: str
+    event: str
+
+
+class Run:
+    """The state of one history on its way.
+
+    Parameters
+    ----------
+    pair : evolve.system.pair.Pair
+    progress : callable or None
+        Called as progress(time, end_time, regime, steps) after every accepted step.
+    """
+
+    def __init__(self, pair, progress=None):
+        values = pair.config.values
+        self.pair, self.progress = pair, progress
+        self.numerics, self.end = values["numerics"], values["end"]
+        self.contact_rate = values["overflow"]["contact_rate"]
+        self.law = pair.plan.overflow
+        self.recorder, self.marks, self.openings = Recorder(), [], []
+        self.switches = pair.first_switches()
+        self.in_contact = {"A": False, "B": False}
+        self.inspiral = self._inspirals()
+        self.time = 0.0
+        self.state = np.array(pair.start + [0.0] * len(pair.layout.ledger))
+        self.outcome, self.message = "", ""
+        self.steps = self.evaluations = self.jacobians = self.stretches = 0
+        self.idle = 0
+        self.opening_event = ""
+
+    # What watches and chapters ask -----------------------------------------------------
+
+    def flow(self, c):
+        """True if component c may lose mass through its lobe in this stretch."""
+        return getattr(self.switches, f"flow_{c}")
+
+    def braking(self, c):
+        """True if magnetic braking acts on component c in this stretch."""
+        return getattr(self.switches, f"braking_{c}")
+
+    def slot(self, name):
+        """Where a quantity of that name stands."""
+        return self.pair.layout.quantities.index(name)
+
+    def log_period(self, q):
+        """ln of the period in yr."""
+        return log(2.0 * pi / q.omega)
+
+    @property
+    def regime(self):
+        """The regime of the chapter, by who is in contact."""
+        if self.inspiral:
+            return "inspiral"
+        return next((f"overflow_{c}" for c in "AB" if self.in_contact[c]), "detached")
+
+    def now(self):
+        """The quantities at the present state."""
+        return self.pair.quantities(self.time, self.state.tolist(), self.switches)
+
+    def _inspirals(self):
+        """True if only waves act and no star can fill its lobe: then -ln a leads."""
+        laws, models = self.pair.laws, self.pair.models
+        others = [*laws.braking.values(), *laws.wind.values()]
+        overflows = any(model.overflows for model in models.values())
+        return laws.waves is not None and laws.waves.keys.strength > 0.0 and not (
+            any(others) or overflows
+        )
+
+    # The loop ---------------------------------------------------------------------------
+
+    def run(self):
+        """Integrate to the end. Sets `outcome` and `message`; rows, marks and openings stay."""
+        self._open("start")
+        self._mark("start")
+        self._wake()
+        while not self.outcome:
+            self._settle_at_once()
+            if self.outcome:
+                break
+            if self.opening_event:
+                self._open(self.opening_event)
+            try:
+                self._stretch()
+            except KeyboardInterrupt:
+                self._finish("interrupted")
+            except Exception as error:  # a law, the user's own perhaps, failed: keep what is there
+                self._finish("failed", f"{type(error).__name__}: {error}")
+        return self
+
+    def _stretch(self):
+        kind = InspiralStretch if self.inspiral else TimeStretch
+        stretch = kind(self.pair, self.switches, self.time, self.state)
+        bound = stretch.bound(self.end["time"])
+        if bound <= stretch.start:
+            return self._finish("time")
+        self.course = Course(self, stretch, watches_for(self))
+        self.stretches += 1
+        message = self.course.follow(bound)
+        self._close(message)
+        return None
+
+    def _close(self, message):
+        """Take over what a course brought: noted events, its last state, why it stopped."""
+        course = self.course
+        for watch, row, residual in course.noted:
+            self._mark(watch.name, watch.component, row, residual)
+        if course.fired:
+            watch, row, residual = course.fired
+            last = self.recorder.rows[row]
+            self.time, self.state = last.time, last.state
+            self.idle = self.idle + 1 if row == course.first_row else 0
+            self._act(watch, row, residual)
+        elif course.halt:
+            self._finish(course.halt.outcome, course.halt.message)
+        elif message:
+            self._finish("failed", message)
+        else:
+            self.time, self.state = self.recorder.rows[-1].time, self.recorder.rows[-1].state
+            self._finish("merger" if self.inspiral else "time")
+
+    def _settle_at_once(self):
+        """Events that are past already where a stretch starts happen there."""
+        while not self.outcome:
+            if self.idle > CHATTER:
+                return self._finish("failed", "events follow each other without time passing")
+            quantities = self.now()
+            past = next(
+                (
+                    watch
+                    for watch in watches_for(self)
+                    if watch.terminal and watch.at_once
+                    and watch.direction * watch.g(self.time, quantities) > 0.0
+                ),
+                None,
+            )  # fmt: skip
+            if past is None:
+                return None
+            self.idle += 1
+            self._act(past, len(self.recorder) - 1, 0.0)
+        return None
+
+    def _act(self, watch, row, residual):
+        """What a terminal event does to the history."""
+        c = watch.component
+        if watch.name in ("wake", "sleep"):
+            self._switch(f"flow_{c}", watch.name == "wake")
+            return
+        if watch.name == "runaway":
+            if not self._already("unstable_overflow", c):
+                self._mark("unstable_overflow", c, row)
+            return self._finish(watch.end)
+        if watch.name != "end":
+            self._mark(watch.name, c, row, residual)
+        if watch.end:
+            return self._finish(watch.end)
+        if act := getattr(self, f"_on_{watch.name}", None):
+            act(c)
+            self.opening_event = self.opening_event or watch.name
+        return None
+
+    def _on_contact(self, c):
+        if self.in_contact[OTHER[c]]:
+            self._mark("both_lobes_filled", "", len(self.recorder) - 1)
+            return self._finish("both_lobes_filled")
+        self.in_contact[c] = True
+        self._switch(f"flow_{c}", True)
+        quantities = self.now()
+        if self.law == "locked":
+            self._set(f"ln_radius_{c}", log(getattr(quantities, f"lobe_{c}")))
+        elif getattr(quantities, f"zeta_{c}") <= getattr(quantities, f"zeta_lobe_{c}"):
+            self._mark("unstable_overflow", c, len(self.recorder) - 1)
+        return None
+
+    def _on_detachment(self, c):
+        self.in_contact[c] = False
+        if self.law in ("polytrope", "locked"):
+            self._switch(f"flow_{c}", False)
+
+    def _on_braking_stops(self, c):
+        self._set(f"mass_{c}", self.pair.stops_below[c])
+        self._switch(f"braking_{c}", False)
+
+    def _on_braking_resumes(self, c):
+        self._switch(f"braking_{c}", True)
+
+    # Small things -------------------------------------------------------------------------
+
+    def _wake(self):
+        """Flow that is on from the start, and contact if the pair starts in it."""
+        quantities = self.now()
+        for c in "AB":
+            if not self.pair.models[c].overflows:
+                continue
+            own = self.law not in ("atmosphere", "polytrope", "locked")
+            awake = self.law == "atmosphere" and getattr(quantities, f"excess_{c}") > WAKE
+            if own or awake:
+                self._switch(f"flow_{c}", True)
+            ratio = getattr(quantities, f"radius_{c}") / getattr(quantities, f"lobe_{c}")
+            if self.law in ("polytrope", "locked") and abs(ratio - 1.0) <= CONTACT_MARGIN:
+                self._mark("contact", c, 0)
+                self._on_contact(c)
+                self.opening_event = "contact"
+
+    def _switch(self, name, on):
+        self.switches = self.switches._replace(**{name: on})
+
+    def _set(self, slot, value):
+        """Put a slot of the core to an exact value, where it has that slot."""
+        if slot in self.pair.layout.core:
+            self.state = self.state.copy()
+            self.state[self.pair.layout.core.index(slot)] = value
+
+    def _mark(self, name, component="", row=0, residual=0.0):
+        self.marks.append(Mark(name, component, row, residual))
+        if name == self.end["event"]:
+            self._finish("event")
+
+    def _already(self, name, c):
+        return any(mark.name == name and mark.component == c for mark in self.marks)
+
+    def _open(self, event):
+        """Start a chapter here: a row with the equations that hold from now on."""
+        self.opening_event = ""
+        quantities = self.now()
+        row = self.recorder.add(self.time, self.state, quantities)
+        self.time = self.recorder.rows[row].time
+        if row and event != "start":
+            before = period_rate(0.0, self.recorder.rows[row - 1].quantities)
+            after = period_rate(0.0, quantities)
+            if before < 0.0 < after:
+                self._mark("period_minimum", "", row)
+            elif after < 0.0 < before:
+                self._mark("period_maximum", "", row)
+        self.openings.append(Opening(row, self.regime, event))
+
+    def _finish(self, outcome, detail=""):
+        if self.outcome:
+            return
+        self.outcome = outcome
+        self.message = sentence(outcome, detail)

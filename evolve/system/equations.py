@@ -1,0 +1,494 @@
+"""Writes the right-hand side of one config as the text of a small Python module.
+
+The pair's equations are a sum of laws, and a config chooses which of them act. Writing
+that sum out as text, with nothing in it but the chosen laws, gives one set of equations
+that runs as plain Python at the speed of hand-written code, compiles with numba as it
+stands, and can be read (`evolve check CONFIG --equations`). No formula lives here, except
+the definitions that tie a state to an orbit and the balance of masses and angular
+momentum.
+
+The module written has two functions of the same body,
+
+    rates(time, STATE, switches, parameters)       -> the derivatives, then those of the ledger
+    quantities(time, STATE, switches, parameters)  -> everything a column or an event needs
+
+so what a column shows is what the integrator used. Parameters are arguments, never
+constants of the text: configs that differ only in values share one text.
+
+Switches, constant within a chapter: flow_A, flow_B (the component may lose mass through
+its lobe), braking_A, braking_B.
+"""
+
+from typing import NamedTuple
+
+OTHER = {"A": "B", "B": "A"}
+
+
+class Plan(NamedTuple):
+    """Which laws act, by name of the function in the text; empty text where none does.
+
+    `components` maps "A" and "B" to PlanOfComponent; `overflow` is the law's name as in a
+    config; `expulsion` lists the ways among which the expelled matter is shared.
+    """
+
+    components: dict
+    eccentric: bool
+    waves: bool
+    overflow: str
+    ceiling: bool
+    expulsion: tuple[str, ...]
+    consequential: bool
+    imports: tuple[str, ...]
+
+
+class PlanOfComponent(NamedTuple):
+    """What one component brings: its star model and the laws that act on it."""
+
+    relaxing: bool
+    phase: bool
+    overflows: bool
+    braking: bool
+    wind: bool
+    capture: str  # "", "law" or "share"
+    bare: bool  # in `rates`, while it does not overflow, only its mass acts
+
+
+class Layout(NamedTuple):
+    """Names of the slots of the state: the core (under error control), then the ledger."""
+
+    core: tuple[str, ...]
+    ledger: tuple[str, ...]
+    quantities: tuple[str, ...]
+    parameters: tuple[str, ...]
+    settings: tuple[str, ...]
+
+
+def layout(plan):
+    """The slots of the state, of the quantities and of the parameters of a plan.
+
+    Parameters
+    ----------
+    plan : Plan
+
+    Returns
+    -------
+    Layout
+        `core` starts with mass_A, mass_B [solMass], angular_momentum [solMass solRad2/yr];
+        then, as needed, eccentricity_state u = e/sqrt(1-e2), ln_radius_A, ln_radius_B
+        (ln of solRad), phase_A, phase_B. The ledger's slots are integrals of torques
+        [solMass solRad2/yr] and flows [solMass].
+    """
+    core = ["mass_A", "mass_B", "angular_momentum"]
+    if plan.eccentric:
+        core.append("eccentricity_state")
+    core += [f"ln_radius_{c}" for c in "AB" if plan.components[c].relaxing]
+    core += [f"phase_{c}" for c in "AB" if plan.components[c].phase]
+    return Layout(
+        tuple(core),
+        tuple(_torques(plan) + _flows(plan)),
+        tuple(_quantities(plan)),
+        tuple(_parameters(plan)),
+        tuple(_settings(plan)),
+    )
+
+
+def _torques(plan):
+    names = ["waves"] if plan.waves else []
+    for c in "AB":
+        part = plan.components[c]
+        names += [f"braking_{c}"] * part.braking + [f"torque_wind_{c}"] * part.wind
+        if part.overflows or part.capture:
+            names.append(f"torque_expelled_{c}")
+        if part.overflows and plan.consequential:
+            names.append(f"torque_consequential_{c}")
+    return names
+
+
+def _flows(plan):
+    names = []
+    for c in "AB":
+        part, other = plan.components[c], plan.components[OTHER[c]]
+        names += [f"overflow_{c}"] * part.overflows + [f"wind_{c}"] * part.wind
+        names += [f"captured_{c}"] * bool(part.capture)
+        if other.overflows or other.capture:
+            names += [f"accepted_{c}", f"expelled_{c}"]
+    return names
+
+
+def _quantities(plan):
+    names = ["mass_A", "mass_B", "angular_momentum", "separation", "omega", "mass_rate_A",
+             "mass_rate_B", "torque", "separation_rate"]  # fmt: skip
+    names += ["eccentricity"] + ["eccentricity_rate"] * plan.eccentric
+    for c in "AB":
+        part = plan.components[c]
+        names += [f"{name}_{c}" for name in ("radius", "lobe", "luminosity", "temperature",
+                                             "zeta", "core_mass")]  # fmt: skip
+        names += [f"phase_{c}"] * part.phase
+        if part.overflows:
+            names += [f"zeta_lobe_{c}", f"excess_{c}"]
+            names += [f"drive_{c}"] * (plan.overflow == "locked")
+    return names + _torques(plan) + _flows(plan)
+
+
+def _parameters(plan):
+    names = ["settings", "star_keys_A", "star_keys_B"] + ["waves_keys"] * plan.waves
+    for c in "AB":
+        part = plan.components[c]
+        names += [f"braking_keys_{c}"] * part.braking + [f"wind_keys_{c}"] * part.wind
+        names += [f"capture_keys_{c}"] * (part.capture == "law")
+        if plan.ceiling and _receives(plan, c):
+            names.append(f"ceiling_keys_{c}")
+    names += ["overflow_keys"] * _has_excess(plan)
+    names += [f"expulsion_keys_{way}" for way in plan.expulsion]
+    return names + ["consequential_keys"] * plan.consequential
+
+
+def _settings(plan):
+    names = ["share", "momentum_low", "momentum_high"]
+    for c in "AB":
+        names += [f"mass_low_{c}", f"mass_high_{c}", f"gyration_{c}"]
+        names += [f"capture_share_{c}"] * (plan.components[c].capture == "share")
+    return names + [f"weight_{way}" for way in plan.expulsion]
+
+
+def _receives(plan, c):
+    other = plan.components[OTHER[c]]
+    return other.overflows or bool(other.capture)
+
+
+def _has_excess(plan):
+    return plan.overflow != "locked" and any(plan.components[c].overflows for c in "AB")
+
+
+# The text -----------------------------------------------------------------------------
+
+
+def write(plan):
+    """The text of the module for one plan.
+
+    Parameters
+    ----------
+    plan : Plan
+
+    Returns
+    -------
+    str
+        A module that defines `rates` and `quantities`. It imports what it calls by name
+        from `plan.imports`; functions that a user brought must be put in its namespace.
+    """
+    slots = layout(plan)
+    head = ["from math import exp, log, nan, sqrt", "", *plan.imports, ""]
+    return "\n".join(
+        head + _function(plan, slots, "rates") + ["", ""] + _function(plan, slots, "quantities")
+    ) + "\n"
+
+
+def _function(plan, slots, name):
+    full = name == "quantities"
+    arguments = ", ".join(("time", *slots.core, "switches", "parameters"))
+    body = [
+        "flow_A, flow_B, braking_on_A, braking_on_B = switches",
+        f"{', '.join(slots.parameters)}, = parameters",
+        f"{', '.join(slots.settings)}, = settings",
+        *_bounds(plan),
+        *_orbit(plan),
+        *_both(_star, plan, full),
+        *_torque_laws(plan),
+        *_both(_wind, plan),
+        *_both(_ceiling, plan),
+        *_both(_transfer, plan, full),
+        *_sums(plan),
+        *(_return_quantities(plan, slots) if full else _return_rates(plan, slots)),
+    ]
+    return [f"def {name}({arguments}):"] + _indented(body)
+
+
+def _both(lines_of, plan, *more):
+    return [line for c in "AB" for line in lines_of(plan, c, *more)]
+
+
+def _indented(lines):
+    return ["    " + line for line in lines]
+
+
+def _bounds(plan):
+    """Trial states may be absurd: bound them here, once, before any law sees them."""
+    limits = [(f"mass_{c}", f"mass_low_{c}", f"mass_high_{c}") for c in "AB"]
+    limits.append(("angular_momentum", "momentum_low", "momentum_high"))
+    if plan.eccentric:
+        limits.append(("eccentricity_state", "0.0", "1e4"))
+    limits += [(f"ln_radius_{c}", "-20.0", "15.0") for c in "AB" if plan.components[c].relaxing]
+    lines = []
+    for name, low, high in limits:
+        lines += [f"if {name} < {low}:", f"    {name} = {low}"]
+        lines += [f"elif {name} > {high}:", f"    {name} = {high}"]
+    return lines
+
+
+def _orbit(plan):
+    lines = [
+        "total_mass = mass_A + mass_B",
+        "product = mass_A * mass_B",
+        "separation = angular_momentum * angular_momentum * total_mass / (G * product * product)",
+    ]
+    if plan.eccentric:
+        lines += [
+            "roundness = 1.0 + eccentricity_state * eccentricity_state  # 1/(1 - e2)",
+            "separation *= roundness",
+            "eccentricity = eccentricity_state / sqrt(roundness)",
+            "periastron = separation / (roundness * (1.0 + eccentricity))  # a (1 - e)",
+        ]
+    else:
+        lines += ["eccentricity = 0.0", "periastron = separation"]
+    return lines + [
+        "omega = sqrt(G * total_mass / separation) / separation",
+        "orbit = Orbit(separation, eccentricity, omega, angular_momentum, total_mass)",
+    ]
+
+
+def _star(plan, c, full):
+    """The star as laws see it. One that only its mass acts for is not asked for more."""
+    part, o = plan.components[c], OTHER[c]
+    radius = f"exp(ln_radius_{c})" if part.relaxing else "0.0"
+    phase = f"phase_{c}" if part.phase else "0.0"
+    whole = [
+        f"lobe_{c} = periastron * lobe_fraction(mass_{c} / mass_{o})",
+        f"(radius_{c}, equilibrium_{c}, luminosity_{c}, temperature_{c}, zeta_{c}, thermal_{c},",
+        f" phase_rate_{c}, core_mass_{c}, convective_{c}, envelope_mass_{c}, envelope_depth_{c},",
+        f") = structure_{c}(mass_{c}, {radius}, {phase}, star_keys_{c})",
+        f"star_{c} = Star(mass_{c}, radius_{c}, lobe_{c}, luminosity_{c}, temperature_{c},",
+        f"              core_mass_{c}, convective_{c}, zeta_{c}, omega, gyration_{c},",
+        f"              envelope_mass_{c}, envelope_depth_{c})",
+    ]
+    if full or not part.bare:
+        return whole
+    mass_only = ", ".join([f"mass_{c}"] + ["0.0"] * 11)
+    bare = [f"star_{c} = Star({mass_only})  # nothing that acts reads more than its mass"]
+    if not part.overflows:
+        return bare
+    return [f"if flow_{c}:", *_indented(whole), "else:", *_indented(bare)]
+
+
+def _torque_laws(plan):
+    lines = ["waves = waves_torque(star_A, star_B, orbit, waves_keys)"] * plan.waves
+    if plan.eccentric:
+        rate = "waves_eccentricity(star_A, star_B, orbit, waves_keys)" if plan.waves else "0.0"
+        lines.append(f"eccentricity_rate = {rate}")
+    for c in "AB":
+        if plan.components[c].braking:
+            call = f"braking_{c}_torque(star_{c}, star_{OTHER[c]}, orbit, braking_keys_{c})"
+            lines += [
+                f"braking_{c} = 0.0",
+                f"if braking_on_{c} and convective_{c} > 0.0:",
+                f"    braking_{c} = {call}",
+            ]
+    return lines
+
+
+def _wind(plan, c):
+    part, o = plan.components[c], OTHER[c]
+    if not part.wind:
+        return []
+    lines = [f"wind_{c} = wind_{c}_rate(star_{c}, star_{o}, orbit, wind_keys_{c})"]
+    lost = f"wind_{c}"
+    if part.capture:
+        share = f"capture_share_{c}"
+        if part.capture == "law":
+            share = f"capture_{c}_share(star_{c}, star_{o}, orbit, capture_keys_{c})"
+        lines.append(f"captured_{c} = wind_{c} * {share}")
+        lost = f"(wind_{c} - captured_{c})"
+    # what is not captured leaves with the specific angular momentum of its star
+    lines.append(
+        f"torque_wind_{c} = -{lost} * angular_momentum * mass_{o} / (mass_{c} * total_mass)"
+    )
+    return lines
+
+
+def _ceiling(plan, c):
+    """The most that component c accepts."""
+    if not (plan.ceiling and _receives(plan, c)):
+        return []
+    return [f"ceiling_{c} = ceiling_{c}_rate(star_{c}, star_{OTHER[c]}, orbit, ceiling_keys_{c})"]
+
+
+def _transfer(plan, c, full):
+    """What component c passes on: overflow, what of it is accepted, what is expelled."""
+    part = plan.components[c]
+    if not (part.overflows or part.capture):
+        return []
+    lines = []
+    if part.overflows and full and plan.overflow != "locked":
+        lines.append(f"excess_{c} = " + _excess(plan, c))
+    if not part.overflows:
+        return _specific(plan, c) + _balance(plan, c)
+    flowing = _specific(plan, c) * (not part.capture)
+    if full or plan.overflow == "locked":
+        flowing += _response(plan, c, full)
+    flowing += _overflow(plan, c)
+    idle = [f"overflow_{c} = 0.0"]
+    if full:
+        idle += [f"zeta_lobe_{c} = nan", f"excess_{c} = " + _excess(plan, c)]
+        idle += [f"drive_{c} = 0.0"] * (plan.overflow == "locked")
+    if part.capture:
+        return _specific(plan, c) + _either(c, flowing, idle) + _balance(plan, c)
+    o = OTHER[c]
+    idle.append(f"accepted_{o} = expelled_{o} = torque_expelled_{c} = 0.0")
+    idle += [f"torque_consequential_{c} = 0.0"] * plan.consequential
+    return lines + _either(c, flowing + _balance(plan, c), idle)
+
+
+def _either(c, flowing, idle):
+    return [f"if flow_{c}:", *_indented(flowing), "else:", *_indented(idle)]
+
+
+def _excess(plan, c):
+    if plan.overflow == "atmosphere":  # of no interest to a star far inside its lobe
+        call = f"overflow_excess(star_{c}, star_{OTHER[c]}, orbit, overflow_keys)"
+        return f"{call} if radius_{c} > 0.5 * lobe_{c} else -1e9"
+    return f"log(radius_{c} / lobe_{c})"
+
+
+def _specific(plan, c):
+    """Specific angular momentum of the matter expelled on its way from component c."""
+    part, o = plan.components[c], OTHER[c]
+    terms = [
+        f"weight_{way} * expulsion_{way}(star_{c}, star_{o}, orbit, expulsion_keys_{way})"
+        for way in plan.expulsion
+    ]
+    lines = [f"specific_{c} = " + " + ".join(terms)]
+    if plan.consequential and part.overflows:
+        lines.append(
+            f"consequential_{c} = consequential_loss(star_{c}, star_{o}, orbit, consequential_keys)"
+        )
+    return lines
+
+
+def _zeta_lobe(plan, c, kept, name):
+    """d ln R_L / d ln m along the overflow of component c, `kept` of it being accepted."""
+    o = OTHER[c]
+    leaving = f"consequential_{c}" if plan.consequential else f"(1.0 - {kept}) * specific_{c}"
+    return [
+        f"{name} = 2.0 * mass_{c} * {leaving} / angular_momentum - 2.0 \\",
+        f"    + 2.0 * {kept} * mass_{c} / mass_{o} + (1.0 - {kept}) * mass_{c} / total_mass \\",
+        f"    + slope_{c} * (1.0 + {kept} * mass_{c} / mass_{o})",
+    ]
+
+
+def _response(plan, c, full):
+    """zeta_lobe and, with R = R_L imposed, how fast the star would grow past its lobe."""
+    lines = [
+        f"slope_{c} = lobe_slope(mass_{c} / mass_{OTHER[c]})",
+        *_zeta_lobe(plan, c, "share", f"zeta_lobe_{c}"),
+    ]
+    if plan.overflow == "locked":
+        lines += _drive(plan, c) + [f"excess_{c} = " + _excess(plan, c)] * full
+    return lines
+
+
+def _drive(plan, c):
+    """N of the locked law: d ln(R/R_L)/dt with every law acting but the overflow of c."""
+    o = OTHER[c]
+    torques = ["waves"] if plan.waves else []
+    torques += [f"braking_{s}" for s in "AB" if plan.components[s].braking]
+    torques += [f"torque_wind_{s}" for s in "AB" if plan.components[s].wind]
+    kept = {s: "0.0" for s in "AB"}
+    lines = []
+    for s in "AB":
+        if plan.components[s].capture:
+            receiver = OTHER[s]
+            amount = f"share * captured_{s}"
+            if plan.ceiling:
+                amount = f"min({amount}, ceiling_{receiver})"
+            kept[receiver] = f"caught_{receiver}"
+            lines.append(f"caught_{receiver} = {amount}")
+            torques.append(f"(caught_{receiver} - captured_{s}) * specific_{s}")
+    still = {s: kept[s] + (f" - wind_{s}" if plan.components[s].wind else "") for s in "AB"}
+    lines += [
+        f"still_{c} = {still[c]}",
+        f"still_{o} = {still[o]}",
+        f"drive_{c} = thermal_{c} + zeta_{c} * still_{c} / mass_{c} \\",
+        f"    - 2.0 * ({' + '.join(torques) or '0.0'}) / angular_momentum \\",
+        f"    + 2.0 * (still_{c} / mass_{c} + still_{o} / mass_{o}) \\",
+        f"    - (still_{c} + still_{o}) / total_mass \\",
+        f"    - slope_{c} * (still_{c} / mass_{c} - still_{o} / mass_{o})",
+    ]
+    if plan.eccentric:
+        lines.append(f"drive_{c} += eccentricity_rate / (1.0 + eccentricity)")
+    return lines
+
+
+def _overflow(plan, c):
+    part, o = plan.components[c], OTHER[c]
+    if plan.overflow != "locked":
+        return [f"overflow_{c} = overflow_rate(star_{c}, star_{o}, orbit, overflow_keys)"]
+    lines = [f"overflow_{c} = mass_{c} * drive_{c} / max(zeta_{c} - zeta_lobe_{c}, 1e-9)"]
+    if plan.ceiling:
+        # The rate is piecewise linear: below the ceiling `share` of what comes on top is
+        # kept, above it nothing. The piece that holds is the one its own rate lies in.
+        before = f"captured_{c}" if part.capture else "0.0"
+        lines += [
+            f"full_{c} = max(ceiling_{o} / share - {before}, 0.0) if share > 0.0 else 1e99",
+            f"if overflow_{c} > full_{c}:",
+            *_indented(_zeta_lobe(plan, c, "0.0", f"beyond_{c}")),
+            f"    rest_{c} = drive_{c} - full_{c} * (zeta_{c} - zeta_lobe_{c}) / mass_{c}",
+            f"    overflow_{c} = full_{c} + mass_{c} * rest_{c} / max(zeta_{c} - beyond_{c}, 1e-9)",
+        ]
+    return lines
+
+
+def _balance(plan, c):
+    """What reaches the companion of c, what it accepts, what is expelled, with what torque."""
+    part, o = plan.components[c], OTHER[c]
+    reaching = " + ".join(
+        [f"overflow_{c}"] * part.overflows + [f"captured_{c}"] * bool(part.capture)
+    )
+    accepted = f"share * reaching_{o}"
+    if plan.ceiling:
+        accepted = f"min({accepted}, ceiling_{o})"
+    lines = [
+        f"reaching_{o} = {reaching}",
+        f"accepted_{o} = {accepted}",
+        f"expelled_{o} = reaching_{o} - accepted_{o}",
+    ]
+    if plan.consequential and part.overflows:
+        caught = f"expelled_{o} * captured_{c} / max(reaching_{o}, 1e-99)" if part.capture else "0.0"
+        lines += [
+            f"torque_expelled_{c} = -({caught}) * specific_{c}",
+            f"torque_consequential_{c} = -overflow_{c} * consequential_{c}",
+        ]
+    else:
+        lines.append(f"torque_expelled_{c} = -expelled_{o} * specific_{c}")
+    return lines
+
+
+def _sums(plan):
+    lines = []
+    for c in "AB":
+        part = plan.components[c]
+        terms = [f"accepted_{c}"] * _receives(plan, c)
+        terms += [f"- overflow_{c}"] * part.overflows + [f"- wind_{c}"] * part.wind
+        lines.append(f"mass_rate_{c} = " + (" ".join(terms) or "0.0"))
+    lines.append("torque = " + (" + ".join(_torques(plan)) or "0.0"))
+    return lines
+
+
+def _return_rates(plan, slots):
+    parts = ["mass_rate_A", "mass_rate_B", "torque"]
+    if plan.eccentric:
+        parts.append("eccentricity_rate * roundness * sqrt(roundness)")
+    for c in "AB":
+        if plan.components[c].relaxing:
+            parts.append(f"zeta_{c} * mass_rate_{c} / mass_{c} + thermal_{c}")
+    parts += [f"phase_rate_{c}" for c in "AB" if plan.components[c].phase]
+    return [f"return ({', '.join((*parts, *slots.ledger))},)"]
+
+
+def _return_quantities(plan, slots):
+    lines = [
+        "separation_rate = 2.0 * torque / angular_momentum \\",
+        "    - 2.0 * (mass_rate_A / mass_A + mass_rate_B / mass_B) \\",
+        "    + (mass_rate_A + mass_rate_B) / total_mass",
+    ]
+    if plan.eccentric:
+        lines.append("separation_rate += 2.0 * eccentricity * eccentricity_rate * roundness")
+    return [*lines, f"return ({', '.join(slots.quantities)},)"]
