@@ -37,10 +37,7 @@ class Course:
         self.noted, self.fired, self.halt = [], None, None
         self.first_row = len(self.recorder)
         self.spent = run.evaluations
-        self.values = self._watch_values(
-            stretch.time(stretch.start, stretch.state),
-            stretch.quantities(stretch.start, stretch.state),
-        )
+        self.values = self._readings(stretch.quantities(stretch.start, stretch.state))
 
     def follow(self, bound):
         """Integrate to `bound` or the first terminal event; the solver's complaint or ""."""
@@ -88,7 +85,7 @@ class Course:
             return True
         stretch, run = self.stretch, self.run
         time, quantities = stretch.time(x, state), stretch.quantities(x, state)
-        before, self.values = self.values, self._watch_values(time, quantities)
+        before, self.values = self.values, self._readings(quantities)
         crossed = [
             order
             for order, (old, new) in enumerate(zip(before, self.values, strict=True))
@@ -105,8 +102,10 @@ class Course:
             run.progress(time, run.end["time"], run.regime, run.steps)
         return False
 
-    def _watch_values(self, time, quantities):
-        return [watch.g(time, quantities) for watch in self.watches]
+    def _readings(self, quantities):
+        """How far each watch's gauge is above its level."""
+        readings = self.run.pair.gauges(quantities)
+        return [readings[watch.gauge] - watch.level for watch in self.watches]
 
     def _out_of_bounds(self, state):
         mass_a, mass_b, momentum = state[:3].tolist()
@@ -130,7 +129,7 @@ class Course:
             watch, state = self.watches[order], np.array(interpolant(x))
             time, quantities = self.stretch.time(x, state), self.stretch.quantities(x, state)
             row = self.recorder.add(time, self.stretch.kept(state), quantities)
-            event = (watch, row, watch.g(time, quantities))
+            event = (watch, row, self._readings(quantities)[order])
             if watch.terminal:
                 self.fired = event
                 return
@@ -139,7 +138,7 @@ class Course:
     def _root(self, interpolant, order, start, high):
         from scipy.optimize import brentq
 
-        stretch, watch = self.stretch, self.watches[order]
+        stretch = self.stretch
         low, end = self.x_before, self.values[order]
         ends = {low: start, high: end}
 
@@ -147,7 +146,7 @@ class Course:
             if x in ends:
                 return ends[x]
             state = np.array(interpolant(x))
-            return watch.g(stretch.time(x, state), stretch.quantities(x, state))
+            return self._readings(stretch.quantities(x, state))[order]
 
         if start * end > 0.0 or end == 0.0:
             return high

@@ -1,6 +1,6 @@
 """Chapter after chapter from the start of a history to its end."""
 
-from math import log, pi
+from math import log
 from typing import NamedTuple
 
 import numpy as np
@@ -9,7 +9,7 @@ from evolve.integrate.course import Course
 from evolve.integrate.outcomes import sentence
 from evolve.integrate.recorder import Recorder
 from evolve.integrate.stretch import InspiralStretch, TimeStretch
-from evolve.integrate.watches import CONTACT_MARGIN, WAKE, period_rate, watches_for
+from evolve.integrate.watches import CONTACT_MARGIN, WAKE, watches_for
 from evolve.system.equations import OTHER
 
 CHATTER = 25
@@ -69,14 +69,6 @@ class Run:
     def braking(self, c):
         """True if magnetic braking acts on component c in this stretch."""
         return getattr(self.switches, f"braking_{c}")
-
-    def slot(self, name):
-        """Where a quantity of that name stands."""
-        return self.pair.layout.quantities.index(name)
-
-    def log_period(self, q):
-        """ln of the period in yr."""
-        return log(2.0 * pi / q.omega)
 
     @property
     def regime(self):
@@ -155,13 +147,13 @@ class Run:
         while not self.outcome:
             if self.idle > CHATTER:
                 return self._finish("failed", "events follow each other without time passing")
-            quantities = self.now()
+            readings = self.pair.gauges(self.now())
             past = next(
                 (
                     watch
                     for watch in watches_for(self)
                     if watch.terminal and watch.at_once
-                    and watch.direction * watch.g(self.time, quantities) > 0.0
+                    and watch.direction * (readings[watch.gauge] - watch.level) > 0.0
                 ),
                 None,
             )  # fmt: skip
@@ -257,8 +249,9 @@ class Run:
         row = self.recorder.add(self.time, self.state, quantities)
         self.time = self.recorder.rows[row].time
         if row and event != "start":
-            before = period_rate(0.0, self.recorder.rows[row - 1].quantities)
-            after = period_rate(0.0, quantities)
+            gauge = self.pair.layout.gauges.index("period_rate")
+            before = self.pair.gauges(self.recorder.rows[row - 1].quantities)[gauge]
+            after = self.pair.gauges(quantities)[gauge]
             if before < 0.0 < after:
                 self._mark("period_minimum", "", row)
             elif after < 0.0 < before:

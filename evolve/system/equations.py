@@ -7,10 +7,11 @@ stands, and can be read (`evolve check CONFIG --equations`). No formula lives he
 the definitions that tie a state to an orbit and the balance of masses and angular
 momentum.
 
-The module written has two functions of the same body,
+The module written has two functions of the same body and the gauges of events,
 
     rates(time, STATE, switches, parameters)       -> the derivatives, then those of the ledger
     quantities(time, STATE, switches, parameters)  -> everything a column or an event needs
+    gauges(quantities)                             -> the readings whose crossings are events
 
 so what a column shows is what the integrator used. Parameters are arguments, never
 constants of the text: configs that differ only in values share one text.
@@ -20,6 +21,8 @@ its lobe), braking_A, braking_B.
 """
 
 from typing import NamedTuple
+
+from evolve.system.gauges import gauge_expressions, write_gauges
 
 OTHER = {"A": "B", "B": "A"}
 
@@ -54,11 +57,15 @@ class PlanOfComponent(NamedTuple):
 
 
 class Layout(NamedTuple):
-    """Names of the slots of the state: the core (under error control), then the ledger."""
+    """Names of the slots of the state: the core (under error control), then the ledger.
+
+    And of what else the text takes and gives, each in its order.
+    """
 
     core: tuple[str, ...]
     ledger: tuple[str, ...]
     quantities: tuple[str, ...]
+    gauges: tuple[str, ...]
     parameters: tuple[str, ...]
     settings: tuple[str, ...]
 
@@ -87,6 +94,7 @@ def layout(plan):
         tuple(core),
         tuple(_torques(plan) + _flows(plan)),
         tuple(_quantities(plan)),
+        tuple(gauge_expressions(plan)),
         tuple(_parameters(plan)),
         tuple(_settings(plan)),
     )
@@ -116,7 +124,7 @@ def _flows(plan):
 
 
 def _quantities(plan):
-    names = ["mass_A", "mass_B", "angular_momentum", "separation", "omega", "mass_rate_A",
+    names = ["time", "mass_A", "mass_B", "angular_momentum", "separation", "omega", "mass_rate_A",
              "mass_rate_B", "torque", "separation_rate"]  # fmt: skip
     names += ["eccentricity"] + ["eccentricity_rate"] * plan.eccentric
     for c in "AB":
@@ -178,9 +186,9 @@ def write(plan):
     """
     slots = layout(plan)
     head = ["from math import exp, log, nan, sqrt", "", *plan.imports, ""]
-    return "\n".join(
-        head + _function(plan, slots, "rates") + ["", ""] + _function(plan, slots, "quantities")
-    ) + "\n"
+    parts = ["\n".join(head), "\n".join(_function(plan, slots, "rates"))]
+    parts += ["\n".join(_function(plan, slots, "quantities"))]
+    return "\n\n".join([*parts, write_gauges(plan, slots.quantities)])
 
 
 def _function(plan, slots, name):

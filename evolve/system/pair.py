@@ -48,7 +48,9 @@ class Pair:
         The right-hand side as the text of a Python module.
     models : dict
         "A" and "B" -> StarModel.
-    start : ndarray-like list of float
+    gauges : callable
+        Of quantities; the readings named in `layout.gauges`.
+    start : list of float
         State at the start, in the order of `layout.core`.
 
     Raises
@@ -77,6 +79,7 @@ class Pair:
         }
         exec(_code(self.equations), namespace)  # the text of evolve.system.equations only
         self._rates, self._quantities = namespace["rates"], namespace["quantities"]
+        self.gauges = namespace["gauges"]
         self.stops_below = {
             c: values["braking"][c]["stops_below"] if self.laws.braking[c] else 0.0 for c in "AB"
         }

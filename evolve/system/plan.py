@@ -203,7 +203,7 @@ def _plan_of_component(model, laws, c, functions):
 
 def _imports(functions):
     lines = [
-        "from evolve.constants import G",
+        "from evolve.constants import C, G",
         "from evolve.laws.contract import Orbit, Star",
         "from evolve.orbit.lobes import lobe_fraction, lobe_slope",
     ]
