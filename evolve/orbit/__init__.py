@@ -1,0 +1,1 @@
+"""Two bodies and their orbit: Kepler relations, Roche lobes by fit and exactly."""
