@@ -85,7 +85,7 @@ def photosphere(mass, radius, lobe, temperature, mass_ratio):
     mass : float  [solMass]
     radius, lobe : float  [solRad]
     temperature : float  [K]
-        0 where the star has none: the answer is then 1e-4 and 1e-8.
+        Below 1 K (a star that has none): the answer is then 1e-4 and 1e-8.
     mass_ratio : float
         m_other / m_self.
 
@@ -109,7 +109,7 @@ def photosphere(mass, radius, lobe, temperature, mass_ratio):
     ----------
     Ritter 1988, A&A 202, 93; the fits are to the exact equipotentials.
     """
-    if temperature <= 0.0:
+    if temperature < 1.0:
         return FALLBACK_HEIGHT, FALLBACK_RATE
     x = log10(mass_ratio)
     if x < -LARGEST_LOG:

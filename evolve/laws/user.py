@@ -28,8 +28,8 @@ from evolve.errors import ConfigError
 from evolve.laws.contract import Law, NoKeys, described_keys
 from evolve.laws.samples import SIGNS, sample_states
 
-SECOND = {"waves": ("_eccentricity", 0)}
-"""Processes whose laws have a second function: how its name ends, the sign it must have."""
+SECOND = {"waves": "_eccentricity"}
+"""Processes whose laws may bring a second function: how its name ends."""
 
 
 def load_law(path, function_name, process):
@@ -61,11 +61,10 @@ def load_law(path, function_name, process):
     _check(function, keys, process, SIGNS[process], path)
     second = None
     if process in SECOND:
-        ending, sign = SECOND[process]
-        second = getattr(module, function_name + ending, None)
-        if second is not None:
-            second = _function(module, path, function_name + ending)
-            _check(second, keys, process, sign, path)
+        name = function_name + SECOND[process]
+        if hasattr(module, name):
+            second = _function(module, path, name)
+            _check(second, keys, process, 0, path)
     first_line = inspect.getdoc(function).partition("\n")[0]
     return Law(function, keys, (), f"{first_line} (user's own law)", second=second)
 
