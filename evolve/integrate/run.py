@@ -186,6 +186,9 @@ class Run:
         if self.in_contact[OTHER[c]]:
             self._mark("both_lobes_filled", "", len(self.recorder) - 1)
             return self._finish("both_lobes_filled")
+        quantities = self.now()
+        if quantities.eccentricity > 0.0:
+            return self._circularise()
         self.in_contact[c] = True
         self._switch(f"flow_{c}", True)
         quantities = self.now()
@@ -194,6 +197,18 @@ class Run:
         elif getattr(quantities, f"zeta_{c}") <= getattr(quantities, f"zeta_lobe_{c}"):
             self._mark("unstable_overflow", c, len(self.recorder) - 1)
         return None
+
+    def _circularise(self):
+        """Contact at periastron rounds the orbit at constant J; its lobes then have grown.
+
+        The star is detached again, and a second contact may follow.
+        """
+        self._mark("circularised", "", len(self.recorder) - 1)
+        self._set("eccentricity_state", 0.0)
+        quantities = self.now()
+        for c in "AB":
+            if self.law == "atmosphere" and self.pair.models[c].overflows:
+                self._switch(f"flow_{c}", getattr(quantities, f"excess_{c}") > WAKE)
 
     def _on_detachment(self, c):
         self.in_contact[c] = False

@@ -127,4 +127,6 @@ def _noted(run, watch):
     ]
     if any(run.pair.models[c].overflows for c in "AB") or any(run.pair.laws.wind.values()):
         found.append(watch("masses_equal", "", "mass_ratio", 0.0, 0, terminal=False))
+    if "darwin" in run.pair.layout.gauges:
+        found.append(watch("spin_orbit_instability", "", "darwin", 0.0, +1, terminal=False))
     return found

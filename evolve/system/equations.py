@@ -53,6 +53,7 @@ class PlanOfComponent(NamedTuple):
     braking: bool
     wind: bool
     capture: str  # "", "law" or "share"
+    tides: bool  # its spin is followed
     bare: bool  # in `rates`, while it does not overflow, only its mass acts
 
 
@@ -82,7 +83,8 @@ def layout(plan):
     Layout
         `core` starts with mass_A, mass_B [solMass], angular_momentum [solMass solRad2/yr];
         then, as needed, eccentricity_state u = e/sqrt(1-e2), ln_radius_A, ln_radius_B
-        (ln of solRad), phase_A, phase_B. The ledger's slots are integrals of torques
+        (ln of solRad), phase_A, phase_B, spin_momentum_A, spin_momentum_B (k2 m R2 spin)
+        [solMass solRad2/yr]. The ledger's slots are integrals of torques
         [solMass solRad2/yr] and flows [solMass].
     """
     core = ["mass_A", "mass_B", "angular_momentum"]
@@ -90,6 +92,7 @@ def layout(plan):
         core.append("eccentricity_state")
     core += [f"ln_radius_{c}" for c in "AB" if plan.components[c].relaxing]
     core += [f"phase_{c}" for c in "AB" if plan.components[c].phase]
+    core += [f"spin_momentum_{c}" for c in "AB" if plan.components[c].tides]
     return Layout(
         tuple(core),
         tuple(_torques(plan) + _flows(plan)),
@@ -104,7 +107,8 @@ def _torques(plan):
     names = ["waves"] if plan.waves else []
     for c in "AB":
         part = plan.components[c]
-        names += [f"braking_{c}"] * part.braking + [f"torque_wind_{c}"] * part.wind
+        names += [f"braking_{c}"] * (part.braking and not part.tides)
+        names += [f"torque_tides_{c}"] * part.tides + [f"torque_wind_{c}"] * part.wind
         if part.overflows or part.capture:
             names.append(f"torque_expelled_{c}")
         if part.overflows and plan.consequential:
@@ -131,7 +135,7 @@ def _quantities(plan):
         part = plan.components[c]
         names += [f"{name}_{c}" for name in ("radius", "lobe", "luminosity", "temperature",
                                              "zeta", "core_mass")]  # fmt: skip
-        names += [f"phase_{c}"] * part.phase
+        names += [f"phase_{c}"] * part.phase + [f"spin_{c}", f"spin_momentum_{c}"] * part.tides
         if part.overflows:
             names += [f"zeta_lobe_{c}", f"excess_{c}"]
             names += [f"drive_{c}"] * (plan.overflow == "locked")
@@ -144,6 +148,7 @@ def _parameters(plan):
         part = plan.components[c]
         names += [f"braking_keys_{c}"] * part.braking + [f"wind_keys_{c}"] * part.wind
         names += [f"capture_keys_{c}"] * (part.capture == "law")
+        names += [f"tides_keys_{c}"] * part.tides
         if plan.ceiling and _receives(plan, c):
             names.append(f"ceiling_keys_{c}")
     names += ["overflow_keys"] * _has_excess(plan)
@@ -226,6 +231,7 @@ def _bounds(plan):
     if plan.eccentric:
         limits.append(("eccentricity_state", "0.0", "1e4"))
     limits += [(f"ln_radius_{c}", "-20.0", "15.0") for c in "AB" if plan.components[c].relaxing]
+    limits += [(f"spin_momentum_{c}", "0.0", "momentum_high") for c in "AB" if plan.components[c].tides]
     lines = []
     for name, low, high in limits:
         lines += [f"if {name} < {low}:", f"    {name} = {low}"]
@@ -259,13 +265,18 @@ def _star(plan, c, full):
     part, o = plan.components[c], OTHER[c]
     radius = f"exp(ln_radius_{c})" if part.relaxing else "0.0"
     phase = f"phase_{c}" if part.phase else "0.0"
+    spin = f"spin_{c}" if part.tides else "omega"
     whole = [
         f"lobe_{c} = periastron * lobe_fraction(mass_{c} / mass_{o})",
         f"(radius_{c}, equilibrium_{c}, luminosity_{c}, temperature_{c}, zeta_{c}, thermal_{c},",
         f" phase_rate_{c}, core_mass_{c}, convective_{c}, envelope_mass_{c}, envelope_depth_{c},",
         f") = structure_{c}(mass_{c}, {radius}, {phase}, star_keys_{c})",
+        *(
+            [f"spin_{c} = spin_momentum_{c} / (gyration_{c} * mass_{c} * radius_{c} * radius_{c})"]
+            * part.tides
+        ),
         f"star_{c} = Star(mass_{c}, radius_{c}, lobe_{c}, luminosity_{c}, temperature_{c},",
-        f"              core_mass_{c}, convective_{c}, zeta_{c}, omega, gyration_{c},",
+        f"              core_mass_{c}, convective_{c}, zeta_{c}, {spin}, gyration_{c},",
         f"              envelope_mass_{c}, envelope_depth_{c})",
     ]
     if full or not part.bare:
@@ -283,6 +294,11 @@ def _torque_laws(plan):
         rate = "waves_eccentricity(star_A, star_B, orbit, waves_keys)" if plan.waves else "0.0"
         lines.append(f"eccentricity_rate = {rate}")
     for c in "AB":
+        if plan.components[c].tides:
+            arguments = f"(star_{c}, star_{OTHER[c]}, orbit, tides_keys_{c})"
+            lines.append(f"tide_{c} = tides_{c}_torque{arguments}")
+            if plan.eccentric:
+                lines.append(f"eccentricity_rate += tides_{c}_eccentricity{arguments}")
         if plan.components[c].braking:
             call = f"braking_{c}_torque(star_{c}, star_{OTHER[c]}, orbit, braking_keys_{c})"
             lines += [
@@ -375,6 +391,8 @@ def _zeta_lobe(plan, c, kept, name):
     """d ln R_L / d ln m along the overflow of component c, `kept` of it being accepted."""
     o = OTHER[c]
     leaving = f"consequential_{c}" if plan.consequential else f"(1.0 - {kept}) * specific_{c}"
+    if plan.components[c].tides:  # the donor's matter hands its spin over to the orbit
+        leaving = f"({leaving} - spin_momentum_{c} / mass_{c})"
     return [
         f"{name} = 2.0 * mass_{c} * {leaving} / angular_momentum - 2.0 \\",
         f"    + 2.0 * {kept} * mass_{c} / mass_{o} + (1.0 - {kept}) * mass_{c} / total_mass \\",
@@ -397,8 +415,10 @@ def _drive(plan, c):
     """N of the locked law: d ln(R/R_L)/dt with every law acting but the overflow of c."""
     o = OTHER[c]
     torques = ["waves"] if plan.waves else []
-    torques += [f"braking_{s}" for s in "AB" if plan.components[s].braking]
-    torques += [f"torque_wind_{s}" for s in "AB" if plan.components[s].wind]
+    for s in "AB":
+        part = plan.components[s]
+        torques += [f"-tide_{s}"] if part.tides else [f"braking_{s}"] * part.braking
+        torques += [f"torque_wind_{s}"] * part.wind
     kept = {s: "0.0" for s in "AB"}
     lines = []
     for s in "AB":
@@ -476,8 +496,24 @@ def _sums(plan):
         terms = [f"accepted_{c}"] * _receives(plan, c)
         terms += [f"- overflow_{c}"] * part.overflows + [f"- wind_{c}"] * part.wind
         lines.append(f"mass_rate_{c} = " + (" ".join(terms) or "0.0"))
+        if part.tides:
+            lines += _spin(part, c)
     lines.append("torque = " + (" + ".join(_torques(plan)) or "0.0"))
     return lines
+
+
+def _spin(part, c):
+    """Balance of a spin that is followed: tide and braking; wind and overflow carry it off.
+
+    A wind leaves from the whole surface, with 2/3 R2; the overflow with the star's mean k2 R2,
+    which it hands over to the orbit.
+    """
+    handed = f"overflow_{c} * spin_momentum_{c} / mass_{c}" if part.overflows else "0.0"
+    terms = [f"tide_{c}"] + [f"braking_{c}"] * part.braking + [f"- {handed}"] * part.overflows
+    if part.wind:
+        terms.append(f"- 2.0 / 3.0 * wind_{c} * radius_{c} * radius_{c} * spin_{c}")
+    total = " + ".join(terms).replace("+ -", "-")
+    return [f"torque_tides_{c} = {handed} - tide_{c}", f"spin_rate_{c} = {total}"]
 
 
 def _return_rates(plan, slots):
@@ -488,6 +524,7 @@ def _return_rates(plan, slots):
         if plan.components[c].relaxing:
             parts.append(f"zeta_{c} * mass_rate_{c} / mass_{c} + thermal_{c}")
     parts += [f"phase_rate_{c}" for c in "AB" if plan.components[c].phase]
+    parts += [f"spin_rate_{c}" for c in "AB" if plan.components[c].tides]
     return [f"return ({', '.join((*parts, *slots.ledger))},)"]
 
 

@@ -23,7 +23,8 @@ def gauge_expressions(plan):
         rate_c: ln of the overflow in solMass/yr; drive_c: growth past the lobe with R = R_L
         imposed [1/yr]; stability_c: zeta_star - zeta_lobe; runaway_c: positive when
         R > 1.1 R_L or the donor empties itself within 100 dynamical times; mass_c: ln m;
-        merger: positive when a lobe or the last stable orbit is filled; log_period: ln P in
+        darwin: positive when no stable synchronous orbit exists, (I_A + I_B) n > J/3 (Hut
+        1980, A&A 92, 167); merger: positive when a lobe or the last stable orbit is filled; log_period: ln P in
         yr; period_rate: d ln P/dt [1/yr]; mass_ratio: ln(m_A/m_B); time [yr].
     """
     gauges = {"time": "time"}
@@ -41,6 +42,9 @@ def gauge_expressions(plan):
             f"max(log(radius_{c} / lobe_{c} / {RUNAWAY_FILL}), log(max(overflow_{c}, 1e-300)"
             f" * {RUNAWAY_DYNAMICAL_TIMES} * sqrt(radius_{c}**3 / (G * mass_{c})) / mass_{c}))"
         )
+    spins = [f"spin_momentum_{c} / spin_{c}" for c in "AB" if plan.components[c].tides]
+    if spins:  # moments of inertia of the stars whose spins are followed
+        gauges["darwin"] = f"log(3.0 * ({' + '.join(spins)}) * omega / angular_momentum)"
     periastron = "(separation * (1.0 - eccentricity))"
     gauges["merger"] = (
         "max(radius_A / lobe_A, radius_B / lobe_B, "

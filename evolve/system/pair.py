@@ -8,7 +8,7 @@ from typing import NamedTuple
 from evolve.config.units import human
 from evolve.constants import C, G, GRAVITATIONAL_TIME
 from evolve.errors import ConfigError
-from evolve.orbit.kepler import angular_momentum, period, separation_from_period
+from evolve.orbit.kepler import angular_momentum, mean_motion, period, separation_from_period
 from evolve.orbit.lobes import lobe_fraction
 from evolve.stars import MODELS
 from evolve.system.equations import OTHER, layout, write
@@ -119,6 +119,11 @@ class Pair:
         }
         return Switches(braking_A=on["A"], braking_B=on["B"])
 
+    def gyration(self, c):
+        """k2 of the moment of inertia k2 m R2 of component c."""
+        written = self.config.values[c].get("gyration")
+        return self.models[c].gyration if written is None else written
+
     def smallest_separation(self):
         """Where point masses count as merged: 6 G M / c2, the last stable circular orbit."""
         return 6.0 * G * (self.start[0] + self.start[1]) / C**2
@@ -156,6 +161,12 @@ def start_state(pair):
         for c in "AB"
         if pair.plan.components[c].phase
     ]
+    omega = mean_motion(separation, sum(masses.values()))
+    for c in "AB":
+        if pair.plan.components[c].tides:
+            spin = values["tides"][c].get("spin")
+            gyration = pair.gyration(c)
+            state.append(gyration * masses[c] * radii[c] ** 2 * (omega if spin is None else spin))
     return [float(x) for x in state]
 
 

@@ -31,6 +31,7 @@ class Laws(NamedTuple):
     ceiling: dict
     expulsion: dict
     consequential: Chosen | None
+    tides: dict
 
 
 def choose_laws(config):
@@ -71,6 +72,7 @@ def choose_laws(config):
             if weight > 0.0
         },
         consequential=chosen("consequential", expulsion, expulsion["consequential"]),
+        tides={c: chosen("tides", values["tides"][c], place=f":{c}") for c in "AB"},
     )
 
 
@@ -119,6 +121,9 @@ def plan_of(config, laws):
                 functions[name] = chosen.law.function
         if isinstance(laws.capture[c], Chosen):
             functions[f"capture_{c}_share"] = laws.capture[c].law.function
+        if laws.tides[c]:
+            functions[f"tides_{c}_torque"] = laws.tides[c].law.function
+            functions[f"tides_{c}_eccentricity"] = laws.tides[c].law.second
         if laws.ceiling[c]:
             functions[f"ceiling_{c}_rate"] = laws.ceiling[c].law.function
     if laws.waves:
@@ -183,7 +188,7 @@ def fields_read(function, argument):
 
 def _plan_of_component(model, laws, c, functions):
     capture = laws.capture[c]
-    acting = laws.braking[c] or laws.wind[c] or model.relaxing or model.phase
+    acting = laws.braking[c] or laws.wind[c] or laws.tides[c] or model.relaxing or model.phase
     # laws in which c is the companion, and the waves, in which it is either
     seen = [(f, 1) for name, f in functions.items() if not name.startswith("structure")]
     seen += [(functions["waves_torque"], 0)] if laws.waves else []
@@ -197,6 +202,7 @@ def _plan_of_component(model, laws, c, functions):
         braking=laws.braking[c] is not None,
         wind=laws.wind[c] is not None,
         capture="" if capture is None else "share" if isinstance(capture, float) else "law",
+        tides=laws.tides[c] is not None,
         bare=bare,
     )
 
@@ -244,7 +250,7 @@ def parameters_of(config, laws, plan, star_keys):
         settings[f"mass_high_{c}"] = 2.0 * total
         settings[f"gyration_{c}"] = model.gyration if gyration is None else gyration
         settings[f"capture_share_{c}"] = laws.capture[c]
-        for process in ("braking", "wind", "capture", "ceiling"):
+        for process in ("braking", "wind", "capture", "ceiling", "tides"):
             chosen = getattr(laws, process)[c]
             parts[f"{process}_keys_{c}"] = getattr(chosen, "keys", None)
     for way, (weight, chosen) in laws.expulsion.items():

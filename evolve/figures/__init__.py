@@ -1,0 +1,1 @@
+"""Figures of histories: functions that take histories and return a matplotlib Figure."""

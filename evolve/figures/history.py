@@ -1,0 +1,251 @@
+"""The history figure: period, masses, rates and fill through time; and rate against period."""
+
+import numpy as np
+
+from evolve.figures.axes import stretched_time, time_ticks
+from evolve.figures.style import (
+    COMPONENT,
+    DASHES,
+    REGIME,
+    REGIME_WORDS,
+    SERIES,
+    label_of,
+    new_figure,
+    styled,
+)
+from evolve.studies.compare import abscissa_of
+
+RATE_FLOOR = 1e-5
+"""Rates below this share of the largest are not drawn."""
+QUIET = ("start", "end", "masses_equal")
+EVENT_WORDS = {
+    "period_minimum": "P min", "period_maximum": "P max", "braking_stops": "braking stops",
+    "unstable_overflow": "unstable", "both_lobes_filled": "both lobes filled",
+}  # fmt: skip
+OBSERVED_GAP = (2.15, 3.18)
+"""Edges of the observed period gap [h], Knigge 2006 (MNRAS 373, 484)."""
+
+
+@styled
+def history_figure(histories, names=None, on="time"):
+    """Period, masses, rates and fill of one history, or of several overlaid.
+
+    Parameters
+    ----------
+    histories : History or sequence of History
+    names : sequence of str, optional
+        For the legend, where there are several.
+    on : str
+        Abscissa: "time" (stretched where things happen for one history, logarithmic for
+        several), "time_since:EVENT", or a column.
+
+    Returns
+    -------
+    matplotlib.figure.Figure
+    """
+    histories = histories if isinstance(histories, (list, tuple)) else [histories]
+    names = names or [history.title or f"history {n}" for n, history in enumerate(histories, 1)]
+    figure = new_figure(7.0, 7.2)
+    panels = figure.subplots(4, 1, sharex=True, height_ratios=(3, 2, 3, 2))
+    alone = len(histories) == 1
+    for number, history in enumerate(histories):
+        rows, x = _abscissa(history, on, alone)
+        _draw(panels, history, rows, x, None if alone else number)
+    _finish(panels, histories, names, on, alone)
+    if alone:
+        rows, x = _abscissa(histories[0], on, True)
+        _chapters(panels, histories[0], rows, x)
+        _events(panels, histories[0], rows, x)
+    return figure
+
+
+def _abscissa(history, on, alone):
+    if on != "time":
+        return abscissa_of(history, on)
+    rows, time = slice(None), history["time"]
+    if not alone:
+        return rows, time
+    curves = [np.log(history["period"]), history["mass_A"], history["mass_B"],
+              history["fill_A"], history["fill_B"], *_log_rates(history)]  # fmt: skip
+    return rows, stretched_time(time, curves)
+
+
+def _rates(history):
+    """The rates worth drawing: (name, component, values), NaN where they are negligible."""
+    found = []
+    for c in "AB":
+        for name in ("overflow", "wind", "captured"):
+            values = history.columns.get(f"{name}_{c}")
+            if values is not None and values.max() > 0.0:
+                found.append((name, c, values))
+    largest = max((values.max() for _, _, values in found), default=0.0)
+    return [(n, c, np.where(v > RATE_FLOOR * largest, v, np.nan)) for n, c, v in found]
+
+
+def _log_rates(history):
+    return [np.log(values) for _, _, values in _rates(history)]
+
+
+def _draw(panels, history, rows, x, number):
+    color = None if number is None else SERIES[number % len(SERIES)]
+    dash = {} if number is None else {"linestyle": DASHES[number % len(DASHES)]}
+
+    def of(c):
+        return {"color": color or COMPONENT[c], "lw": 1.2 if c == "A" else 0.9, **dash}
+
+    panels[0].plot(x, history["period"][rows], color=color or "black", **dash)
+    for c in "AB":
+        panels[1].plot(x, history[f"mass_{c}"][rows], label=c, **of(c))
+        panels[3].plot(x, history[f"fill_{c}"][rows], label=c, **of(c))
+    for name, c, values in _rates(history):
+        style = {"overflow": {}, "wind": {"alpha": 0.6}, "captured": {"linestyle": ":"}}[name]
+        panels[2].plot(x, values[rows], label=f"{name} of {c}", **{**of(c), **style})
+
+
+def _finish(panels, histories, names, on, alone):
+    period, masses, rates, fill = panels
+    period.set_yscale("log")
+    period.set_ylabel("period [h]")
+    masses.set_ylabel(label_of("mass_A", "mass"))
+    rates.set_ylabel(label_of("overflow_A", "mass flow"))
+    if any(_rates(history) for history in histories):
+        rates.set_yscale("log")
+    else:
+        rates.text(0.5, 0.5, "nothing flows", transform=rates.transAxes, ha="center", color="0.5")
+        rates.set_yticks([])
+    fill.set_ylabel(r"$R\,/\,R_L$")
+    fill.axhline(1.0, color="0.6", lw=0.6, zorder=0)
+    fill.set_ylim(0.0, max(1.15, min(1.3, fill.get_ylim()[1])))
+    if alone:
+        masses.legend(ncols=2, loc="best", title=None)
+        if len(rates.lines) > 1:
+            rates.legend(ncols=3, loc="best")
+    else:
+        handles = [line for line in period.lines[: len(histories)]]
+        period.legend(handles, names, loc="best")
+        masses.text(0.99, 0.06, "A thick, B thin", transform=masses.transAxes, ha="right",
+                    fontsize=7, color="0.35")  # fmt: skip
+    _plain_log_ticks(period)
+    _label_abscissa(fill, histories, on, alone)
+
+
+def _plain_log_ticks(axis):
+    """Periods in plain numbers: nobody reads 10^0.5 hours."""
+    from matplotlib.ticker import FuncFormatter, LogLocator, NullFormatter
+
+    low, high = axis.get_ylim()
+    wide = high / low > 50.0
+    axis.yaxis.set_major_locator(LogLocator(subs=(1.0,) if wide else (1.0, 1.5, 2.0, 3.0, 4.0, 5.0, 7.0)))
+    axis.yaxis.set_major_formatter(FuncFormatter(lambda value, _: f"{value:g}"))
+    axis.yaxis.set_minor_formatter(NullFormatter())
+
+
+def _label_abscissa(axis, histories, on, alone):
+    if on == "time" and alone:
+        time = histories[0]["time"]
+        _, position = _abscissa(histories[0], on, True)
+        axis.set_xlim(0.0, 1.0)
+        axis.set_xticks(*time_ticks(position, time))
+        axis.set_xlabel("time since the start (axis stretched where things change)")
+    elif on == "time":
+        axis.set_xscale("log")
+        firsts = [history["time"][history["time"] > 1e-5 * history["time"][-1]] for history in histories]
+        axis.set_xlim(min(values[0] for values in firsts if len(values)), None)
+        axis.set_xlabel("time since the start [yr]")
+    elif on.startswith("time_since:"):
+        axis.set_xlabel(f"time since {on.removeprefix('time_since:').replace('_', ' ')} [yr]")
+    else:
+        axis.set_xlabel(label_of(on))
+        if on == "period":
+            axis.invert_xaxis()
+
+
+def _chapters(panels, history, rows, x):
+    start = rows.start or 0
+    for chapter in history.chapters:
+        first, last = chapter.first_row - start, chapter.last_row - start
+        if first < 0 or last >= len(x):
+            continue
+        left, right = x[first], x[last]
+        for panel in panels:
+            panel.axvspan(left, right, color=REGIME[chapter.regime], lw=0, zorder=-5)
+        extent = abs(x[-1] - x[0]) or 1.0
+        if abs(right - left) > 0.1 * extent:
+            panels[3].text(0.5 * (left + right), 0.04, REGIME_WORDS[chapter.regime],
+                           transform=panels[3].get_xaxis_transform(), ha="center", va="bottom",
+                           fontsize=6.5, color="0.35")  # fmt: skip
+
+
+def _events(panels, history, rows, x):
+    """Names of the events along the top, kept apart from each other."""
+    start, extent = rows.start or 0, abs(x[-1] - x[0]) or 1.0
+    taken = []
+    for event in history.events:
+        row = event.row - start
+        if event.name in QUIET or not 0 <= row < len(x):
+            continue
+        for panel in panels:
+            panel.axvline(x[row], color="0.55", lw=0.5, ls=(0, (2, 2)), zorder=-1)
+        place = float(x[row])
+        if taken and place - taken[-1] < 0.022 * extent:
+            place = taken[-1] + 0.022 * extent
+        taken.append(place)
+        words = EVENT_WORDS.get(event.name, event.name.replace("_", " "))
+        words += f" ({event.component})" if event.component and event.name == "contact" else ""
+        panels[0].annotate(
+            words, (x[row], 1.0), (place, 1.02), xycoords=panels[0].get_xaxis_transform(),
+            textcoords=panels[0].get_xaxis_transform(), rotation=60, fontsize=6.5, va="bottom",
+            ha="left", annotation_clip=False, color="0.2",
+        )  # fmt: skip
+
+
+@styled
+def rate_period_figure(histories, names=None, gap=False):
+    """Overflow rate against orbital period, in the direction of an observer's diagram.
+
+    Parameters
+    ----------
+    histories : History or sequence of History
+    names : sequence of str, optional
+    gap : bool
+        Mark the observed period gap of cataclysmic variables (Knigge 2006).
+
+    Returns
+    -------
+    matplotlib.figure.Figure
+    """
+    histories = histories if isinstance(histories, (list, tuple)) else [histories]
+    names = names or [history.title or f"history {n}" for n, history in enumerate(histories, 1)]
+    figure = new_figure(4.6, 3.4)
+    axis = figure.subplots()
+    for number, (history, name) in enumerate(zip(histories, names, strict=True)):
+        rate = _total_overflow(history)
+        axis.plot(
+            history["period"], rate, label=name, color=SERIES[number % len(SERIES)],
+            linestyle=DASHES[number % len(DASHES)],
+        )  # fmt: skip
+    axis.set_xscale("log")
+    axis.set_yscale("log")
+    axis.set_xlabel("period [h]")
+    axis.set_ylabel(label_of("overflow_A", "overflow"))
+    if gap:
+        axis.axvspan(*OBSERVED_GAP, color="0.88", lw=0, zorder=-5)
+        axis.text(np.sqrt(np.prod(OBSERVED_GAP)), 0.97, "observed gap", fontsize=6.5, ha="center",
+                  va="top", transform=axis.get_xaxis_transform(), color="0.35")  # fmt: skip
+    if len(histories) > 1:
+        axis.legend(loc="best")
+    _plain_log_ticks_x(axis)
+    return figure
+
+
+def _total_overflow(history):
+    total = sum(history.columns.get(f"overflow_{c}", 0.0) for c in "AB") + 0.0 * history["time"]
+    return np.where(total > RATE_FLOOR * max(total.max(), 1e-300), total, np.nan)
+
+
+def _plain_log_ticks_x(axis):
+    from matplotlib.ticker import FuncFormatter, LogLocator, NullFormatter
+
+    axis.xaxis.set_major_locator(LogLocator(subs=(1.0, 1.5, 2.0, 3.0, 5.0, 7.0)))
+    axis.xaxis.set_major_formatter(FuncFormatter(lambda value, _: f"{value:g}"))
+    axis.xaxis.set_minor_formatter(NullFormatter())

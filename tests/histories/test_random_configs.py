@@ -1,0 +1,118 @@
+"""Random legal configs over the whole range of every key end with a stated reason."""
+
+import random
+
+import numpy as np
+import pytest
+
+import evolve
+from evolve.errors import ConfigError
+from evolve.integrate.outcomes import GOOD
+
+SEED = 20260117
+COUNT = 200
+CHUNKS = 20
+OUTCOMES = {*GOOD, "step_limit", "domain", "non_finite", "failed"}
+
+
+def log_uniform(rng, low, high):
+    return float(np.exp(rng.uniform(np.log(low), np.log(high))))
+
+
+def random_star(rng):
+    model = rng.choice(["dwarf", "dwarf", "white-dwarf", "compact", "power-law"])
+    if model == "dwarf":
+        return {"star": model, "mass": rng.uniform(0.02, 0.98),
+                "inflation": rng.choice([0.0, rng.uniform(0.0, 0.2)])}  # fmt: skip
+    if model == "white-dwarf":
+        return {"star": model, "mass": rng.uniform(0.05, 1.37)}
+    if model == "compact":
+        kind = rng.choice(["neutron-star", "black-hole", "point-mass"])
+        mass = {"neutron-star": rng.uniform(1.1, 2.1), "black-hole": log_uniform(rng, 3.0, 100.0),
+                "point-mass": log_uniform(rng, 0.01, 100.0)}[kind]  # fmt: skip
+        return {"star": model, "kind": kind, "mass": mass}
+    return {"star": model, "mass": log_uniform(rng, 0.1, 20.0),
+            "radius": log_uniform(rng, 0.01, 50.0), "exponent": rng.uniform(-1.0, 3.0)}  # fmt: skip
+
+
+def random_braking(rng):
+    law = rng.choice(["rappaport-verbunt-joss-1983", "verbunt-zwaan-1981", "andronov-2003",
+                      "ivanova-taam-2003"])  # fmt: skip
+    keys = {"law": law, "strength": log_uniform(rng, 0.01, 10.0),
+            "stops_below": rng.choice([0.0, 0.2, 0.35])}  # fmt: skip
+    if law.startswith("rappaport"):
+        keys["gamma"] = rng.uniform(0.0, 4.0)
+    return keys
+
+
+def random_expulsion(rng):
+    ways = ["accretor", "donor", "ring", "multiple"]
+    first, second = rng.sample(ways, 2)
+    weight = round(rng.uniform(0.05, 0.95), 3)
+    return {
+        "from": rng.choice([first, {first: weight, second: 1.0 - weight}, "outer-point"]),
+        "ring": log_uniform(rng, 1.0, 4.0),
+        "multiple": rng.uniform(0.1, 3.0),
+        "consequential": rng.choice(["none", "none", "schreiber-2016"]),
+    }
+
+
+def random_config(rng):
+    """One legal config: every section may be there, every key may take its whole range."""
+    orbit = rng.choice([
+        {"fill": rng.uniform(0.3, 1.0)}, {"contact": True}, {"fill": rng.uniform(0.9, 1.0)},
+        {"period": f"{log_uniform(rng, 0.5, 300.0)} h"},
+        {"separation": log_uniform(rng, 0.1, 300.0)},
+    ])  # fmt: skip
+    if rng.random() < 0.3 and "contact" not in orbit:
+        orbit["eccentricity"] = rng.choice([rng.uniform(0.0, 0.9), rng.uniform(0.9, 0.999)])
+    config = {
+        "A": random_star(rng), "B": random_star(rng), "orbit": orbit,
+        "waves": {"strength": rng.choice([1.0, log_uniform(rng, 0.1, 100.0)])},
+        "overflow": {"law": rng.choice(["atmosphere", "polytrope", "locked"])},
+        "acceptance": {"share": rng.choice([0.0, 1.0, rng.random()])},
+        "expulsion": random_expulsion(rng),
+        "end": {"time": f"{log_uniform(rng, 1e-3, 14.0)} Gyr"},
+        "numerics": {"max_evaluations": 60000, "rtol": log_uniform(rng, 1e-8, 1e-4)},
+    }  # fmt: skip
+    if rng.random() < 0.5:
+        config["braking"] = random_braking(rng)
+    if rng.random() < 0.1:
+        config["waves"] = {"law": "off"}
+    for key, value in (("period_below", "1 h"), ("period_above", "100 h"), ("rate_below", 1e-11)):
+        if rng.random() < 0.1:
+            config["end"][key] = value
+    return config
+
+
+def check(history):
+    assert history.outcome in OUTCOMES and history.message
+    time = history["time"]
+    assert len(time) >= 1 and (np.diff(time) > 0.0).all()
+    for name, values in history.columns.items():
+        if name not in ("zeta_lobe", "transfer_time", "thermal_time", "zeta_star"):
+            assert np.isfinite(values).all(), name
+    for name in ("overflow_A", "overflow_B", "mass_A", "mass_B", "separation"):
+        if name in history.columns:
+            assert (history[name] >= 0.0).all(), name
+    assert abs(history.ledger.residuals["angular_momentum"]) < 1e-6
+    assert history.events[0].name == "start" and history.events[-1].name == "end"
+    assert history.chapters[0].first_row == 0
+    assert history.chapters[-1].last_row == len(time) - 1
+
+
+@pytest.mark.parametrize("chunk", range(CHUNKS))
+def test_random_legal_configs_end_with_a_reason(chunk):
+    rng = random.Random(SEED + chunk)
+    done = refused = 0
+    while done < COUNT // CHUNKS:
+        config = random_config(rng)
+        try:
+            history = evolve.run(config)
+        except ConfigError as error:  # an overfilled start can only be told by the stars
+            assert "overfilled" in str(error) or "lobe" in str(error) or "radius" in str(error)
+            refused += 1
+            assert refused < 40 * COUNT
+            continue
+        check(history)
+        done += 1
