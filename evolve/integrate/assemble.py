@@ -215,7 +215,7 @@ def sources_of(pair):
     chosen = [laws.waves, *laws.braking.values(), *laws.wind.values(), *laws.capture.values()]
     chosen += [laws.overflow, *laws.ceiling.values(), *(c for _, c in laws.expulsion.values())]
     chosen.append(laws.consequential)
-    keys = ["iau-2015-b3", "eggleton-1983"]
+    keys = ["iau-2015", "eggleton-1983"]
     for entry in chosen:
         keys += getattr(getattr(entry, "law", None), "sources", ())
     for c in "AB":
