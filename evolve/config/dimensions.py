@@ -56,6 +56,7 @@ DIMENSIONS = {
             "distance", "pc", "pc", ("pc", "kpc", "Mpc"),
             (("au", 0.0), ("pc", 0.1), ("kpc", 1.0), ("Mpc", 1.0)),
         ),
+        Dimension("spin", "rad / yr", "rad/yr", ("rad/s", "rad/yr", "deg/d"), (("rad/s", 0.0),)),
         Dimension("frequency", "Hz", "Hz", ("Hz", "mHz", "1/yr"), (("mHz", 0.0), ("Hz", 0.1))),
     )
 }  # fmt: skip
