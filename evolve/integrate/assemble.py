@@ -188,12 +188,13 @@ def _ledger(run):
             mass[name] = values
         else:
             momentum[name.removeprefix("torque_")] = values
-    ends = [rows[0].state, rows[-1].state]
+    ends = [dict(zip(run.pair.layout.core, row.state, strict=False)) for row in (rows[0], rows[-1])]
+    names = ("mass_A", "mass_B", "angular_momentum")
     return Ledger(
         angular_momentum=momentum,
         mass=mass,
-        start={"mass_A": ends[0][0], "mass_B": ends[0][1], "angular_momentum": ends[0][2]},
-        end={"mass_A": ends[1][0], "mass_B": ends[1][1], "angular_momentum": ends[1][2]},
+        start={name: ends[0][name] for name in names},
+        end={name: ends[1][name] for name in names},
     )
 
 

@@ -108,8 +108,7 @@ class Course:
         return [readings[watch.gauge] - watch.level for watch in self.watches]
 
     def _out_of_bounds(self, state):
-        mass_a, mass_b, momentum = state[:3].tolist()
-        if not (mass_a > 0.0 and mass_b > 0.0 and momentum > 0.0):
+        if not (state[:3] > 0.0).all():
             return "a mass or the angular momentum"
         for slot, name in enumerate(self.run.pair.layout.core[3:], 3):
             if name.startswith("ln_") and not -20.0 < state[slot] < 15.0:

@@ -30,10 +30,14 @@ OTHER = {"A": "B", "B": "A"}
 class Plan(NamedTuple):
     """Which laws act, by name of the function in the text; empty text where none does.
 
-    `components` maps "A" and "B" to PlanOfComponent; `overflow` is the law's name as in a
+    `order` is "AB" or "BA": which component comes first in every slot and sum, chosen by what
+    the components are, not by how they are called; so a config with the names exchanged
+    gives the same history to the last bit. `components` maps "A" and "B" to PlanOfComponent;
+    `overflow` is the law's name as in a
     config; `expulsion` lists the ways among which the expelled matter is shared.
     """
 
+    order: str
     components: dict
     eccentric: bool
     waves: bool
@@ -87,12 +91,12 @@ def layout(plan):
         [solMass solRad2/yr]. The ledger's slots are integrals of torques
         [solMass solRad2/yr] and flows [solMass].
     """
-    core = ["mass_A", "mass_B", "angular_momentum"]
+    core = [*(f"mass_{c}" for c in plan.order), "angular_momentum"]
     if plan.eccentric:
         core.append("eccentricity_state")
-    core += [f"ln_radius_{c}" for c in "AB" if plan.components[c].relaxing]
-    core += [f"phase_{c}" for c in "AB" if plan.components[c].phase]
-    core += [f"spin_momentum_{c}" for c in "AB" if plan.components[c].tides]
+    core += [f"ln_radius_{c}" for c in plan.order if plan.components[c].relaxing]
+    core += [f"phase_{c}" for c in plan.order if plan.components[c].phase]
+    core += [f"spin_momentum_{c}" for c in plan.order if plan.components[c].tides]
     return Layout(
         tuple(core),
         tuple(_torques(plan) + _flows(plan)),
@@ -105,7 +109,7 @@ def layout(plan):
 
 def _torques(plan):
     names = ["waves"] if plan.waves else []
-    for c in "AB":
+    for c in plan.order:
         part = plan.components[c]
         names += [f"braking_{c}"] * (part.braking and not part.tides)
         names += [f"torque_tides_{c}"] * part.tides + [f"torque_wind_{c}"] * part.wind
@@ -118,7 +122,7 @@ def _torques(plan):
 
 def _flows(plan):
     names = []
-    for c in "AB":
+    for c in plan.order:
         part, other = plan.components[c], plan.components[OTHER[c]]
         names += [f"overflow_{c}"] * part.overflows + [f"wind_{c}"] * part.wind
         names += [f"captured_{c}"] * bool(part.capture)
@@ -131,7 +135,7 @@ def _quantities(plan):
     names = ["time", "mass_A", "mass_B", "angular_momentum", "separation", "omega", "mass_rate_A",
              "mass_rate_B", "torque", "separation_rate"]  # fmt: skip
     names += ["eccentricity"] + ["eccentricity_rate"] * plan.eccentric
-    for c in "AB":
+    for c in plan.order:
         part = plan.components[c]
         names += [f"{name}_{c}" for name in ("radius", "lobe", "luminosity", "temperature",
                                              "zeta", "core_mass")]  # fmt: skip
@@ -144,7 +148,7 @@ def _quantities(plan):
 
 def _parameters(plan):
     names = ["settings", "star_keys_A", "star_keys_B"] + ["waves_keys"] * plan.waves
-    for c in "AB":
+    for c in plan.order:
         part = plan.components[c]
         names += [f"braking_keys_{c}"] * part.braking + [f"wind_keys_{c}"] * part.wind
         names += [f"capture_keys_{c}"] * (part.capture == "law")
@@ -158,7 +162,7 @@ def _parameters(plan):
 
 def _settings(plan):
     names = ["share", "momentum_low", "momentum_high"]
-    for c in "AB":
+    for c in plan.order:
         names += [f"mass_low_{c}", f"mass_high_{c}", f"gyration_{c}"]
         names += [f"capture_share_{c}"] * (plan.components[c].capture == "share")
     return names + [f"weight_{way}" for way in plan.expulsion]
@@ -170,7 +174,7 @@ def _receives(plan, c):
 
 
 def _has_excess(plan):
-    return plan.overflow != "locked" and any(plan.components[c].overflows for c in "AB")
+    return plan.overflow != "locked" and any(plan.components[c].overflows for c in plan.order)
 
 
 # The text -----------------------------------------------------------------------------
@@ -217,7 +221,7 @@ def _function(plan, slots, name):
 
 
 def _both(lines_of, plan, *more):
-    return [line for c in "AB" for line in lines_of(plan, c, *more)]
+    return [line for c in plan.order for line in lines_of(plan, c, *more)]
 
 
 def _indented(lines):
@@ -226,12 +230,12 @@ def _indented(lines):
 
 def _bounds(plan):
     """Trial states may be absurd: bound them here, once, before any law sees them."""
-    limits = [(f"mass_{c}", f"mass_low_{c}", f"mass_high_{c}") for c in "AB"]
+    limits = [(f"mass_{c}", f"mass_low_{c}", f"mass_high_{c}") for c in plan.order]
     limits.append(("angular_momentum", "momentum_low", "momentum_high"))
     if plan.eccentric:
         limits.append(("eccentricity_state", "0.0", "1e4"))
-    limits += [(f"ln_radius_{c}", "-20.0", "15.0") for c in "AB" if plan.components[c].relaxing]
-    limits += [(f"spin_momentum_{c}", "0.0", "momentum_high") for c in "AB" if plan.components[c].tides]
+    limits += [(f"ln_radius_{c}", "-20.0", "15.0") for c in plan.order if plan.components[c].relaxing]
+    limits += [(f"spin_momentum_{c}", "0.0", "momentum_high") for c in plan.order if plan.components[c].tides]
     lines = []
     for name, low, high in limits:
         lines += [f"if {name} < {low}:", f"    {name} = {low}"]
@@ -293,7 +297,7 @@ def _torque_laws(plan):
     if plan.eccentric:
         rate = "waves_eccentricity(star_A, star_B, orbit, waves_keys)" if plan.waves else "0.0"
         lines.append(f"eccentricity_rate = {rate}")
-    for c in "AB":
+    for c in plan.order:
         if plan.components[c].tides:
             arguments = f"(star_{c}, star_{OTHER[c]}, orbit, tides_keys_{c})"
             lines.append(f"tide_{c} = tides_{c}_torque{arguments}")
@@ -415,13 +419,13 @@ def _drive(plan, c):
     """N of the locked law: d ln(R/R_L)/dt with every law acting but the overflow of c."""
     o = OTHER[c]
     torques = ["waves"] if plan.waves else []
-    for s in "AB":
+    for s in plan.order:
         part = plan.components[s]
         torques += [f"-tide_{s}"] if part.tides else [f"braking_{s}"] * part.braking
         torques += [f"torque_wind_{s}"] * part.wind
-    kept = {s: "0.0" for s in "AB"}
+    kept = {s: "0.0" for s in plan.order}
     lines = []
-    for s in "AB":
+    for s in plan.order:
         if plan.components[s].capture:
             receiver = OTHER[s]
             amount = f"share * captured_{s}"
@@ -430,7 +434,7 @@ def _drive(plan, c):
             kept[receiver] = f"caught_{receiver}"
             lines.append(f"caught_{receiver} = {amount}")
             torques.append(f"(caught_{receiver} - captured_{s}) * specific_{s}")
-    still = {s: kept[s] + (f" - wind_{s}" if plan.components[s].wind else "") for s in "AB"}
+    still = {s: kept[s] + (f" - wind_{s}" if plan.components[s].wind else "") for s in plan.order}
     lines += [
         f"still_{c} = {still[c]}",
         f"still_{o} = {still[o]}",
@@ -491,7 +495,7 @@ def _balance(plan, c):
 
 def _sums(plan):
     lines = []
-    for c in "AB":
+    for c in plan.order:
         part = plan.components[c]
         terms = [f"accepted_{c}"] * _receives(plan, c)
         terms += [f"- overflow_{c}"] * part.overflows + [f"- wind_{c}"] * part.wind
@@ -517,14 +521,14 @@ def _spin(part, c):
 
 
 def _return_rates(plan, slots):
-    parts = ["mass_rate_A", "mass_rate_B", "torque"]
+    parts = [*(f"mass_rate_{c}" for c in plan.order), "torque"]
     if plan.eccentric:
         parts.append("eccentricity_rate * roundness * sqrt(roundness)")
-    for c in "AB":
+    for c in plan.order:
         if plan.components[c].relaxing:
             parts.append(f"zeta_{c} * mass_rate_{c} / mass_{c} + thermal_{c}")
-    parts += [f"phase_rate_{c}" for c in "AB" if plan.components[c].phase]
-    parts += [f"spin_rate_{c}" for c in "AB" if plan.components[c].tides]
+    parts += [f"phase_rate_{c}" for c in plan.order if plan.components[c].phase]
+    parts += [f"spin_rate_{c}" for c in plan.order if plan.components[c].tides]
     return [f"return ({', '.join((*parts, *slots.ledger))},)"]
 
 

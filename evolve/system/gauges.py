@@ -28,7 +28,7 @@ def gauge_expressions(plan):
         yr; period_rate: d ln P/dt [1/yr]; mass_ratio: ln(m_A/m_B); time [yr].
     """
     gauges = {"time": "time"}
-    for c in "AB":
+    for c in plan.order:
         gauges[f"mass_{c}"] = f"log(mass_{c})"
         gauges[f"fill_{c}"] = f"log(max(radius_{c}, 1e-99) / lobe_{c})"
         if not plan.components[c].overflows:
@@ -42,7 +42,7 @@ def gauge_expressions(plan):
             f"max(log(radius_{c} / lobe_{c} / {RUNAWAY_FILL}), log(max(overflow_{c}, 1e-300)"
             f" * {RUNAWAY_DYNAMICAL_TIMES} * sqrt(radius_{c}**3 / (G * mass_{c})) / mass_{c}))"
         )
-    spins = [f"spin_momentum_{c} / spin_{c}" for c in "AB" if plan.components[c].tides]
+    spins = [f"spin_momentum_{c} / spin_{c}" for c in plan.order if plan.components[c].tides]
     if spins:  # moments of inertia of the stars whose spins are followed
         gauges["darwin"] = f"log(3.0 * ({' + '.join(spins)}) * omega / angular_momentum)"
     periastron = "(separation * (1.0 - eccentricity))"

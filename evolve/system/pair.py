@@ -113,7 +113,7 @@ class Pair:
 
     def first_switches(self):
         """Braking as the masses at the start have it; no flow."""
-        masses = {"A": self.start[0], "B": self.start[1]}
+        masses = dict(zip(self.plan.order, self.start, strict=False))
         on = {
             c: self.laws.braking[c] is not None and masses[c] > self.stops_below[c] for c in "AB"
         }
@@ -140,29 +140,29 @@ def start_state(pair):
     """Core state at the start, from period, separation or fill and the stars' radii."""
     values = pair.config.values
     orbit = values["orbit"]
-    masses = {c: values[c]["mass"] for c in "AB"}
+    masses = {c: values[c]["mass"] for c in pair.plan.order}
     eccentricity = orbit["eccentricity"]
-    fractions = {c: lobe_fraction(masses[c] / masses[OTHER[c]]) for c in "AB"}
-    radii = {c: _start_radius(pair, c) for c in "AB"}
+    fractions = {c: lobe_fraction(masses[c] / masses[OTHER[c]]) for c in pair.plan.order}
+    radii = {c: _start_radius(pair, c) for c in pair.plan.order}
     separation = _start_separation(pair, masses, radii, fractions)
-    lobes = {c: separation * (1.0 - eccentricity) * fractions[c] for c in "AB"}
-    for c in "AB":
+    lobes = {c: separation * (1.0 - eccentricity) * fractions[c] for c in pair.plan.order}
+    for c in pair.plan.order:
         if radii[c] == "lobe":
             radii[c] = lobes[c]
-    for c in "AB":
+    for c in pair.plan.order:
         if radii[c] > lobes[c] * (1.0 + OVERFILL):
             raise ConfigError(_overfilled(pair, c, radii[c], lobes[c], masses, fractions))
     state = [*masses.values(), angular_momentum(*masses.values(), separation, eccentricity)]
     if pair.plan.eccentric:
         state.append(eccentricity / sqrt(1.0 - eccentricity**2))
-    state += [log(radii[c]) for c in "AB" if pair.plan.components[c].relaxing]
+    state += [log(radii[c]) for c in pair.plan.order if pair.plan.components[c].relaxing]
     state += [
         pair.models[c].start_phase(masses[c], values[c])
-        for c in "AB"
+        for c in pair.plan.order
         if pair.plan.components[c].phase
     ]
     omega = mean_motion(separation, sum(masses.values()))
-    for c in "AB":
+    for c in pair.plan.order:
         if pair.plan.components[c].tides:
             spin = values["tides"][c].get("spin")
             gyration = pair.gyration(c)

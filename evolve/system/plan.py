@@ -138,6 +138,7 @@ def plan_of(config, laws):
     if laws.consequential:
         functions["consequential_loss"] = laws.consequential.law.function
     plan = Plan(
+        order="".join(sorted("AB", key=lambda c: (values[c]["star"], repr(values[c])))),
         components={c: _plan_of_component(models[c], laws, c, functions) for c in "AB"},
         eccentric=values["orbit"]["eccentricity"] > 0.0,
         waves=laws.waves is not None,

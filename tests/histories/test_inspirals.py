@@ -15,7 +15,7 @@ def pair(mass_a, mass_b, eccentricity=0.0, **orbit):
         "A": {"mass": mass_a, **point},
         "B": {"mass": mass_b, **point},
         "orbit": {"eccentricity": eccentricity, **orbit},
-        "end": {"time": "1e6 Gyr"},
+        "end": {"time": "10000 Gyr"},
         "numerics": {"rtol": 1e-9},
     }
 

@@ -47,11 +47,13 @@ def test_minimum_period(history):
 
 
 def test_rates_above_and_below_the_gap(history):
+    """1e-9..1e-8 above the gap, a few 1e-11 below (Howell, Nelson & Rappaport 2001, ApJ 550,
+    897, give them to a factor of three); after the first thermal readjustment."""
     first = history.at("contact").row, history.at("braking_stops").row
     rates = history["overflow_A"][first[0] : first[1]]
     masses = history["mass_A"][first[0] : first[1]]
-    settled = rates[masses < 0.58]
-    assert settled.min() > 1e-9 and settled.max() < 1e-8
+    settled = rates[masses < 0.5]
+    assert settled.min() > 1e-9 / 1.2 and settled.max() < 1e-8
     below = history["overflow_A"][history.at("contact[2]").row :]
     mass = history["mass_A"][history.at("contact[2]").row :]
     steady = below[(mass < 0.19) & (mass > 0.08)]
@@ -112,8 +114,13 @@ def test_results_converge_as_the_tolerance_falls():
     assert errors[1] < 1e-4 and errors[2] < 1e-5
 
 
-def test_conservative_transfer_from_the_heavier_dwarf_is_unstable():
-    """zeta = -1/3 needs q < 0.634 with Eggleton's lobe; 0.6/0.75 = 0.8."""
-    history = evolve.run(red_dwarf(acceptance={"share": 1.0}))
-    assert history.outcome == "unstable_overflow"
-    assert "unstable_overflow" in [event.name for event in history.events]
+@pytest.mark.parametrize("law", ["atmosphere", "polytrope", "locked"])
+def test_conservative_transfer_from_the_heavier_dwarf_is_unstable(law):
+    """zeta = -1/3 needs q < 0.634 with Eggleton's lobe; 0.6/0.75 = 0.8. With R = R_L imposed
+    there is no rate at all; the other laws go on and lose mass within thousands of years."""
+    history = evolve.run(red_dwarf(overflow={"law": law}, acceptance={"share": 1.0}))
+    assert history.at("unstable_overflow").row == history.at("contact").row
+    if law == "locked":
+        assert history.outcome == "unstable_overflow"
+    else:
+        assert history["overflow_A"].max() > 1e-6
