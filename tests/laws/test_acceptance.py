@@ -42,6 +42,11 @@ def test_eddington_rate_of_black_holes():
     )
 
 
+def test_fixed_rate():
+    law = find("ceiling", "rate")
+    assert law.function(make_star(1.0), DONOR, ORBIT, law.keys(rate=3e-8)) == 3e-8
+
+
 def test_a_point_has_no_ceiling():
     assert eddington(1.0, 0.0) == acceptance.NO_CEILING
 

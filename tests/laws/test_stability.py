@@ -157,6 +157,10 @@ def test_critical_mass_ratios(zeta, shares, eggleton, paczynski):
     assert critical(zeta, shares, paczynski_slope) == close((paczynski,), rel=1e-8)
 
 
+def test_nothing_lost_by_default():
+    assert critical_mass_ratios(-THIRD) == close((0.63397950072,), rel=1e-8)
+
+
 @pytest.mark.parametrize(
     "zeta, shares", [(THIRD + 1e-3, JEANS), (4.0, JEANS), (1.0, GAMMA), (-THIRD, GAMMA)]
 )

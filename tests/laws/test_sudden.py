@@ -33,6 +33,9 @@ def test_survival_needs_room_for_both():
     assert survives(0.4, 0.016, 0.6, 0.55, 3.4)
     assert not survives(0.4, 0.016, 0.6, 0.55, 1.2)  # the companion is too large
     assert not survives(0.4, 2.0, 0.6, 0.55, 3.4)  # the core is
+    lobe = 3.4 * lobe_fraction(0.6 / 0.4)
+    assert survives(0.4, 0.016, 0.6, 0.999 * lobe, 3.4)
+    assert not survives(0.4, 0.016, 0.6, 1.001 * lobe, 3.4)
 
 
 @pytest.mark.parametrize(

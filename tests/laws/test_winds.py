@@ -27,6 +27,10 @@ def test_reimers():
     assert rate("reimers-1975", 1.0, 100.0, 1e3) == close(4e-8 * 0.477, rel=1e-12)
 
 
+def test_constant():
+    assert rate("constant", 1.0, rate=3e-7) == 3e-7
+
+
 def test_nieuwenhuijzen_dejager():
     # Nieuwenhuijzen & de Jager 1990 (constants from memory)
     name = "nieuwenhuijzen-dejager-1990"
@@ -50,7 +54,16 @@ def test_vink():
 def test_vink_holds_its_hot_end_and_blends_at_the_others():
     name = "vink-2001"
     assert rate(name, 30.0, 10.0, 1e5, 7e4) == rate(name, 30.0, 10.0, 1e5, 5e4)
-    # cold: the rate of 1990
+    # away from the points where the logarithms vanish, evaluated independently
+    assert rate(name, 40.0, 10.0, 3e5, 3e4) == close(5.7416840217e-7, rel=1e-9)
+    assert rate(name, 40.0, 10.0, 3e5, 1.5e4) == close(2.3173214010e-6, rel=1e-9)
+    # cold: the rate of 1990, passed over to between 10000 and 12500 K
+    mean = rate("nieuwenhuijzen-dejager-1990", 30.0, 50.0, 1e5)
+    lower, middle, upper = (rate(name, 30.0, 50.0, 1e5, t) for t in (1e4, 11250.0, 12500.0))
+    assert lower == close(mean, rel=1e-9) and upper == close(
+        4.088140e-7 * (12500.0 / 2e4) ** 1.07, rel=1e-6
+    )
+    assert middle == close(sqrt(lower * upper), rel=1e-9)
     assert rate(name, 30.0, 50.0, 1e5, 9e3) == close(
         rate("nieuwenhuijzen-dejager-1990", 30.0, 50.0, 1e5), rel=1e-9
     )
@@ -72,7 +85,11 @@ def speed_km_s(mass, radius, luminosity, temperature, separation):
 
 def test_speed_far_away_is_a_multiple_of_the_escape_speed():
     # v_esc = 617.7 km/s at the Sun's surface; Lamers, Snow & Lindholm 1995: 2.6, 1.3, 0.7 of it
-    for temperature, ratio in [(4e4, 2.6), (2e4, 1.3), (5e3, 0.7)]:
+    # and the middle of the blends between them
+    for temperature, ratio in [
+        (4e4, 2.6), (27500.0, 2.6), (25000.0, 1.95), (22500.0, 1.3), (2e4, 1.3), (12500.0, 1.3),
+        (11250.0, 1.0), (1e4, 0.7), (5e3, 0.7),
+    ]:  # fmt: skip
         assert speed_km_s(1.0, 1.0, 0.0, temperature, 1e9) == close(ratio * 617.7, rel=1e-3)
 
 
