@@ -1,4 +1,8 @@
-"""The stars: one file a radius model, one table of all."""
+"""The stars: radius models by the name a config calls them. One file a model.
+
+To add a star: write its `structure` (`evolve.stars.contract`), its Keys and `prepare`, end the
+file with a `MODEL`, and put one line into the table below.
+"""
 
 from evolve.stars import (
     compact,
@@ -11,8 +15,9 @@ from evolve.stars import (
     track,
     white_dwarf,
 )
+from evolve.stars.contract import StarModel
 
-MODELS = {
+MODELS: dict[str, StarModel] = {
     "compact": compact.MODEL,
     "power-law": power_law.MODEL,
     "white-dwarf": white_dwarf.MODEL,
@@ -24,4 +29,4 @@ MODELS = {
     "track": track.MODEL,
 }
 
-__all__ = ["MODELS"]
+__all__ = ["MODELS", "StarModel"]

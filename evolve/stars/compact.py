@@ -1,58 +1,99 @@
-"""Neutron stars, black holes and point masses: bodies that never overflow a lobe."""
+"""Neutron stars, black holes, and point masses of any kind. They do not fill a lobe: they merge."""
 
-from evolve.constants import C, G
-from evolve.laws.contract import Annotated, Key, NamedTuple
+from math import isnan, nan
+from typing import Annotated, NamedTuple
+
+from evolve.constants import C, R_SUN_SI, G
+from evolve.errors import DomainError
+from evolve.laws.contract import Key
 from evolve.stars.contract import StarModel, Structure, Text
+from evolve.stars.surface import effective_temperature, given, given_light, light
 
-NEUTRON_STAR_RADIUS = 1.72e-5  # solRad, 12 km, common practice
-BLACK_HOLE_RADIUS = 6.0 * G / C**2  # solRad per solMass: last stable orbit without spin
+NEUTRON_STAR_RADIUS = 12e3 / R_SUN_SI
+"""12 km, in solRad: 1.72e-5."""
+LAST_ORBIT = 6.0 * G / C**2
+"""6 G m/c2 of one solMass [solRad]: the last stable orbit about a hole without spin."""
 
 
 class CompactKeys(NamedTuple):
-    """Keys of a compact body. `per_mass` is the radius of a black hole over its mass."""
+    """Keys of a compact star. `radius_per_mass` [solRad/solMass] follows from the kind."""
 
-    radius: Annotated[float, Key("solRad", 0.0, 1e3, "radius; by its kind if not given")] = 0.0
-    spin: Annotated[float, Key("", 0.0, 0.998, "dimensionless spin of a black hole")] = 0.0
-    per_mass: float = 0.0
+    radius: Annotated[
+        float, Key("solRad", 0.0, 1e6, "default: 12 km, 6 G m/c2 or 0, by kind")
+    ] = nan
+    spin: Annotated[
+        float, Key("", 0.0, 0.998, "of a black hole, c J/(G m2)")
+    ] = 0.0
+    luminosity: Annotated[float, Key("solLum", 0.0, 1e12, "constant")] = nan
+    temperature: Annotated[float, Key("K", 0.0, 1e9, "effective, constant")] = nan
+    radius_per_mass: float = 0.0
 
 
 def structure(mass, radius, phase, keys):
-    """A body of given radius that answers nothing.
+    """A star of constant radius, or a black hole with that of its last stable orbit.
 
     Parameters
     ----------
     mass : float  [solMass]
     radius, phase : float
-        Ignored.
+        Not used.
     keys : CompactKeys
 
     Returns
     -------
     Structure
-        Radius: of a neutron star 12 km, of a black hole 6 G m/c2 (for tables and drawings
-        only), of a point mass 0, unless given.
+        `radius` [solRad] 12 km for a neutron star, 6 G m/c2 for a black hole whatever its spin
+        (for tables and drawings), 0 for a point mass; or as given.
 
     Notes
     -----
-    No luminosity and no temperature of its own.
+    No evolution, no response to accretion but the proportion of a hole's radius to its mass.
 
     References
     ----------
-    Common practice.
+    Bardeen, Press & Teukolsky 1972, ApJ 178, 347 (last stable orbit).
     """
-    size = keys.radius + keys.per_mass * mass
-    return Structure(size, size, 0.0, 0.0, 0.0, 0.0, 0.0, 0.0, 0.0, 0.0, 0.0)
+    size = keys.radius + keys.radius_per_mass * mass
+    zeta = 1.0 if keys.radius_per_mass > 0.0 else 0.0
+    return Structure(
+        size, size, keys.luminosity, keys.temperature, zeta, 0.0, 0.0, 0.0, 0.0, 0.0, 0.0
+    )
 
 
 def prepare(mass, values):
-    """Keys by the kind of body."""
-    radius = values.get("radius")
-    spin = values.get("spin") or 0.0
-    if radius is not None:
-        return CompactKeys(radius, spin)
-    if values["kind"] == "black-hole":
-        return CompactKeys(0.0, spin, BLACK_HOLE_RADIUS)
-    return CompactKeys(NEUTRON_STAR_RADIUS if values["kind"] == "neutron-star" else 0.0, spin)
+    """The keys of a compact star from the values of a config.
+
+    Parameters
+    ----------
+    mass : float  [solMass]
+    values : dict
+        `kind`, and optionally `radius`, `spin`, `luminosity`, `temperature`.
+
+    Returns
+    -------
+    CompactKeys
+
+    Raises
+    ------
+    DomainError
+        A spin of anything but a black hole; light of a black hole; light given twice.
+    """
+    kind, radius = values["kind"], given(values, "radius")
+    spin = given(values, "spin", 0.0)
+    luminosity, temperature = given_light(values)
+    hole = kind == "black-hole"
+    if spin > 0.0 and not hole:
+        raise DomainError(f"spin = {spin:g} belongs to a black hole, not to a {kind}")
+    if hole and luminosity + temperature > 0.0:
+        raise DomainError("a black hole has no luminosity or temperature of its own")
+    per_mass = LAST_ORBIT if hole and isnan(radius) else 0.0
+    if isnan(radius):
+        radius = NEUTRON_STAR_RADIUS if kind == "neutron-star" else 0.0
+    if temperature > 0.0:
+        luminosity, temperature = light(mass, radius, 0.0, temperature)
+    elif luminosity > 0.0 and radius > 0.0:
+        temperature = effective_temperature(radius, luminosity)
+    return CompactKeys(radius, spin, luminosity, temperature, per_mass)
 
 
 MODEL = StarModel(
@@ -60,15 +101,17 @@ MODEL = StarModel(
     keys=CompactKeys,
     prepare=prepare,
     texts={
-        "kind": Text(("neutron-star", "black-hole", "point-mass"), ..., "what the body is")
+        "kind": Text(
+            ("neutron-star", "black-hole", "point-mass"), ..., "what kind of compact star"
+        )
     },
     relaxing=False,
     phase="",
     start_phase=None,
     overflows=False,
     mass_range=(1e-12, 1e12),
-    gyration=0.4,
+    gyration=0.35,  # representative of a neutron star, from memory; a point has no inertia
     kind="",
-    sources=(),
-    validity="bodies far smaller than their lobes; they merge instead of overflowing",
+    sources=("bardeen-press-teukolsky-1972",),
+    validity="bodies so small that they merge before they fill a lobe, of any mass",
 )

@@ -1,106 +1,140 @@
-"""Low-mass main-sequence stars and brown dwarfs that relax on their thermal time."""
+"""Low-mass main-sequence stars, and the brown dwarfs they become as donors."""
 
-from math import exp, log
+from math import exp, log, sqrt
+from typing import Annotated, NamedTuple
 
 from evolve.constants import GRAVITATIONAL_TIME, T_SUN
-from evolve.laws.contract import Annotated, Key, NamedTuple
+from evolve.errors import DomainError
+from evolve.laws.contract import Key
 from evolve.stars.contract import StarModel, Structure, Text
-from evolve.stars.tables import built_in, cubics, evaluate, interval, judge
+from evolve.stars.curves import cubics, interval
+from evolve.stars.surface import FULLY_CONVECTIVE, convective_envelope, given
+from evolve.stars.tables import builtin, checked
 
-RELAXATION = 7.0 / 3.0 / GRAVITATIONAL_TIME
-WIDEST = exp(1.5)
-"""Trial radii count as at most this many times the equilibrium radius, or its inverse."""
+RELAXATION = -7.0 / (3.0 * GRAVITATIONAL_TIME)
+LEAST, MOST = exp(-1.5), exp(1.5)
+"""Trial states with R/R_eq beyond these relax as if it were there."""
 
 
 class DwarfKeys(NamedTuple):
-    """Keys of a dwarf; `knots` (ln m), `radii` (ln R), `lights` (ln L) are its table."""
+    """Keys of a dwarf.
+
+    `knots` (n,) are ln m of the table's rows, `cubics` the coefficients of ln R_eq and ln L_eq
+    over them; `mass_low`, `mass_high` [solMass] the ends of the table.
+    """
 
     inflation: Annotated[
-        float, Key("", -0.5, 1.0, "share by which the equilibrium radius exceeds the table")
+        float, Key("", -0.5, 1.0, "share by which R_eq exceeds the table's radius")
     ] = 0.0
     zeta_ad: Annotated[
-        float, Key("", -1.0, 10.0, "adiabatic d ln R / d ln m; -1/3 holds up to 0.35 solar masses")
+        float, Key("", -10.0, 100.0, "d ln R / d ln m on losing mass at once")
     ] = -1.0 / 3.0
-    knots: tuple = ()
-    radii: tuple = ()
-    lights: tuple = ()
+    knots: tuple[float, ...] = ()
+    cubics: tuple[float, ...] = ()
+    mass_low: float = 0.0
+    mass_high: float = 0.0
 
 
 def structure(mass, radius, phase, keys):
-    """A convective star that relaxes to the equilibrium radius of its mass.
+    """A low-mass star that relaxes to its equilibrium radius as an n = 3/2 polytrope.
 
     Parameters
     ----------
     mass : float  [solMass]
+        Trial states beyond the ends of the table have the R_eq and L_eq of its ends.
     radius : float  [solRad]
     phase : float
-        Ignored.
+        Not used.
     keys : DwarfKeys
 
     Returns
     -------
     Structure
-        thermal = -(7/3) (R L_eq/(G m2)) (x^2 - x^-9), x = R/R_eq; L = L_eq x^2.
+        `thermal` -(7/3) (R L_eq/(G m^2)) (x^2 - x^-9) with x = R/R_eq(m), ln x bounded to
+        +-1.5; `luminosity` L_eq x^2.
 
     Notes
     -----
-    A fully convective star is an n = 3/2 polytrope of energy -(3/7) G m2/R; x^2 is the
-    surface luminosity at constant effective temperature, x^-9 the central burning, whose
-    temperature exponent is taken as 6. No free parameter. Taken as convective throughout, also
-    above 0.35 solar masses, where a radiative core grows. Outside the table's masses its last
-    values hold; a run ends there (`validity`).
+    The energy of such a star is -(3/7) G m^2/R. x^2 is what it radiates at constant effective
+    temperature, x^-9 what it burns with a temperature exponent of 6. The relaxation and the
+    response -1/3 hold for a fully convective star, up to 0.35 solMass; above they are taken
+    over as they stand, and the star counts as convective with the envelope of
+    `convective_envelope`. The rows of the table are of one age: no evolution.
 
     References
     ----------
-    D'Antona, Mazzitelli & Ritter 1989, A&A 225, 391 (the split of the response); table of
-    Baraffe et al. 1998, A&A 337, 403 and 2003, A&A 402, 701, from memory.
+    D'Antona, Mazzitelli & Ritter 1989, A&A 225, 391 (three terms of the radius); Baraffe et
+    al. 1998, A&A 337, 403 and 2003, A&A 402, 701 (table, from memory).
     """
-    knots = keys.knots
     x = log(mass)
+    knots = keys.knots
+    last = len(knots) - 1
     if x < knots[0]:
         x = knots[0]
-    elif x > knots[-1]:
-        x = knots[-1]
-    place = interval(knots, x)
-    distance = x - knots[place]
-    equilibrium = exp(evaluate(keys.radii, place, distance)) * (1.0 + keys.inflation)
-    light = exp(evaluate(keys.lights, place, distance))
+    elif x > knots[last]:
+        x = knots[last]
+    i = interval(knots, x)
+    x -= knots[i]
+    i *= 8
+    c = keys.cubics
+    equilibrium = exp(c[i] + x * (c[i + 1] + x * (c[i + 2] + x * c[i + 3])))
+    light = exp(c[i + 4] + x * (c[i + 5] + x * (c[i + 6] + x * c[i + 7])))
     ratio = radius / equilibrium
-    if ratio > WIDEST:
-        ratio = WIDEST
-    elif ratio < 1.0 / WIDEST:
-        ratio = 1.0 / WIDEST
+    luminosity = light * ratio * ratio
+    temperature = T_SUN * sqrt(sqrt(light) / equilibrium)
+    if ratio < LEAST:
+        ratio = LEAST
+    elif ratio > MOST:
+        ratio = MOST
     square = ratio * ratio
-    fourth = square * square
-    thermal = -RELAXATION * radius * light / (mass * mass) * (
-        square - 1.0 / (fourth * fourth * ratio)
-    )
-    luminosity = light * square
-    temperature = T_SUN * (luminosity / (radius * radius)) ** 0.25
+    eighth = square * square
+    eighth *= eighth
+    thermal = RELAXATION * ratio * equilibrium * light / (mass * mass)
+    thermal *= square - 1.0 / (eighth * ratio)
+    envelope, depth = mass, radius
+    if mass > FULLY_CONVECTIVE:
+        envelope, depth = convective_envelope(mass, radius)
     return Structure(
-        radius, equilibrium, luminosity, temperature, keys.zeta_ad, thermal, 0.0, 0.0, 1.0, mass,
-        radius,
+        radius, equilibrium, luminosity, temperature, keys.zeta_ad, thermal, 0.0, 0.0, 1.0,
+        envelope, depth,
     )  # fmt: skip
 
 
 def prepare(mass, values):
-    """Keys with the curves of the built-in table, or of the user's."""
-    table = values.get("table")
-    if table is None:
-        table = built_in("dwarf")
-    judge(table, "mass", ("mass", "radius", "luminosity"))
-    knots = tuple(log(x) for x in table["mass"])
+    """The keys of a dwarf from the values of a config.
+
+    Parameters
+    ----------
+    mass : float  [solMass]
+        At the start.
+    values : dict
+        Optionally `inflation`, `zeta_ad`, and `table`: columns mass, radius, luminosity in
+        place of the built-in one.
+
+    Returns
+    -------
+    DwarfKeys
+
+    Raises
+    ------
+    DomainError
+        A table that makes no sense, or that ends before the star's mass.
+    """
+    table = values.get("table") or builtin("dwarf")
+    table = checked(table, "mass", positive=("mass", "radius", "luminosity"))
     low, high = table["mass"][0], table["mass"][-1]
     if not low <= mass <= high:
-        from evolve.errors import DomainError
-
-        raise DomainError(f"mass {mass:g} Msun is outside its table, {low:g}..{high:g} Msun")
-    given = {name: values[name] for name in ("inflation", "zeta_ad") if values.get(name) is not None}
+        raise DomainError(f"the mass {mass:g} is outside the table of masses, {low:g} to {high:g}")
+    inflation = given(values, "inflation", 0.0)
+    knots = tuple(log(m) for m in table["mass"])
+    radii = [log(radius * (1.0 + inflation)) for radius in table["radius"]]
     return DwarfKeys(
-        **given,
-        knots=knots,
-        radii=cubics(knots, [log(x) for x in table["radius"]]),
-        lights=cubics(knots, [log(x) for x in table["luminosity"]]),
+        inflation,
+        given(values, "zeta_ad", -1.0 / 3.0),
+        knots,
+        cubics(knots, radii, [log(value) for value in table["luminosity"]]),
+        low,
+        high,
     )
 
 
@@ -108,15 +142,19 @@ MODEL = StarModel(
     structure=structure,
     keys=DwarfKeys,
     prepare=prepare,
-    texts={"table": Text(None, None, "CSV of mass, radius, luminosity in place of the built-in one")},
+    texts={
+        "table": Text(
+            None, None, "table of mass, radius, luminosity in place of the built-in one"
+        )
+    },
     relaxing=True,
     phase="",
     start_phase=None,
     overflows=True,
     mass_range=(0.01, 1.0),
-    gyration=0.205,
+    gyration=0.205,  # n = 3/2 polytrope
     kind="gas",
-    sources=("baraffe-1998", "baraffe-2003", "dantona-mazzitelli-ritter-1989"),
-    validity="0.01..1 solar masses, solar composition, 5 Gyr; polytropic response to 0.35",
+    sources=("dantona-mazzitelli-ritter-1989", "baraffe-1998", "baraffe-2003"),
+    validity="0.01..1 solMass at 5 Gyr, relaxing as a fully convective star (true to 0.35)",
     table={"mass": "solMass", "radius": "solRad", "luminosity": "solLum"},
 )

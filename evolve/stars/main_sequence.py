@@ -1,119 +1,213 @@
-"""Main-sequence stars of any mass: a stand-in between zero age and the end of hydrogen.
+"""Main-sequence stars of any mass, as they burn their hydrogen: a stand-in.
 
-A serious history of an evolved donor wants the user's own track (`star = "track"`).
+A serious history of an evolved donor wants a track of the user's own (`star = "track"`).
 """
 
-from math import log
+from math import exp, isnan, log, nan, sqrt
+from typing import Annotated, NamedTuple
 
-from evolve.constants import GRAVITATIONAL_TIME, T_SUN
 from evolve.errors import DomainError
-from evolve.laws.contract import Annotated, Key, NamedTuple
+from evolve.laws.contract import Key
 from evolve.stars.contract import StarModel, Structure
-from evolve.stars.tables import cubics, evaluate, interval
-from evolve.stars.zero_age import lifetime, zero_age_luminosity, zero_age_radius
+from evolve.stars.curves import cubics, interval
+from evolve.stars.relaxation import relaxation_rate
+from evolve.stars.surface import RADIATIVE, convective_envelope, effective_temperature, given
+from evolve.stars.zero_age import zero_age_luminosity, zero_age_radius
 
-ZETA_MASSES = (0.4, 0.6, 0.8, 1.0, 1.3)
-ZETA_CURVE = cubics(ZETA_MASSES, (-1.0 / 3.0, 0.0, 1.0, 2.6, 4.0))
+BRIGHTENING = log(2.4)
+"""ln of the factor by which the luminosity grows from zero age to the end."""
+SMALL_GROWTH = log(1.6)
+"""ln of the factor by which the radius does, below `BEND`."""
 BEND = 1.583
-"""Mass above which the radius at the end grows by Demircan & Kahraman's ratio [solMass]."""
-CONVECTIVE = (0.2, 1.25)
-"""Masses with a convective envelope and so with braking [solMass]."""
-LOG_LIGHT = log(2.4)
+"""Mass [solMass] from which on the final radius is that of Demircan & Kahraman."""
+ZETA_MASSES = (0.4, 0.6, 0.8, 1.0, 1.3)
+ZETA_CUBICS = cubics(ZETA_MASSES, (-1.0 / 3.0, 0.0, 1.0, 2.6, 4.0))
+"""Adiabatic exponents by mass [solMass]: representative values from memory."""
 
 
 class MainSequenceKeys(NamedTuple):
-    """Keys of a main-sequence star. zeta_ad below -1 stands for "by mass"."""
+    """Keys of a main-sequence star. `zeta_ad` NaN: by the mass. `phase_high`: the end."""
 
-    burnt: Annotated[float, Key("", 0.0, 1.0, "burnt fraction at the start")] = 0.0
-    age: Annotated[float, Key("yr", 0.0, 1e15, "age at the start, in place of `burnt`")] = 0.0
+    burnt: Annotated[float, Key("", 0.0, 1.0, "burnt fraction at the start; default 0")] = nan
+    age: Annotated[
+        float, Key("yr", 0.0, 1e13, "at the start, in place of the burnt fraction")
+    ] = nan
     zeta_ad: Annotated[
-        float, Key("", -2.0, 50.0, "adiabatic d ln R / d ln m; -2: by mass, -1/3 to 4")
-    ] = -2.0
+        float,
+        Key("", -10.0, 100.0, "d ln R / d ln m on losing mass at once; default by the mass"),
+    ] = nan
+    phase_low: float = 0.0
+    phase_high: float = 1.0
+
+
+def lifetime(mass):
+    """Time a star spends on the main sequence at solar composition.
+
+    Parameters
+    ----------
+    mass : float  [solMass]
+        0.1..100.
+
+    Returns
+    -------
+    float  [yr]
+        0.95 of the time to the base of the giant branch.
+
+    References
+    ----------
+    Hurley, Pols & Tout 2000, MNRAS 315, 543, eq. 4 for Z = 0.02 (coefficients from memory).
+    """
+    m2 = mass * mass
+    m4 = m2 * m2
+    m7 = m4 * m2 * mass
+    rise = 1593.890 + 2706.708 * m4 + 146.6143 * m4 * mass * sqrt(mass) + m7
+    return 0.95e6 * rise / (0.04141960 * m2 + 0.3426349 * m7)
 
 
 def adiabatic_exponent(mass):
-    """zeta_ad by mass: -1/3 to 0.4, 0 at 0.6, 1 at 0.8, 2.6 at 1.0, 4 from 1.3 solar masses.
+    """Answer of the radius to sudden mass loss, by mass.
 
-    Representative values from memory, joined by a monotone cubic.
+    Parameters
+    ----------
+    mass : float  [solMass]
+
+    Returns
+    -------
+    float
+        -1/3 up to 0.4 solMass, 0 at 0.6, 1 at 0.8, 2.6 at 1.0, 4 from 1.3 on; monotone between.
+
+    References
+    ----------
+    Hjellming & Webbink 1987, ApJ 318, 794 (trend; the values are representative, from memory).
     """
-    if mass <= ZETA_MASSES[0]:
-        return -1.0 / 3.0
-    if mass >= ZETA_MASSES[-1]:
-        return 4.0
-    place = interval(ZETA_MASSES, mass)
-    return evaluate(ZETA_CURVE, place, mass - ZETA_MASSES[place])
+    last = len(ZETA_MASSES) - 1
+    if mass < ZETA_MASSES[0]:
+        mass = ZETA_MASSES[0]
+    elif mass > ZETA_MASSES[last]:
+        mass = ZETA_MASSES[last]
+    i = interval(ZETA_MASSES, mass)
+    x = mass - ZETA_MASSES[i]
+    i *= 4
+    c = ZETA_CUBICS
+    return c[i] + x * (c[i + 1] + x * (c[i + 2] + x * c[i + 3]))
 
 
 def structure(mass, radius, phase, keys):
-    """A star on its way from zero age (phase 0) to the end of the main sequence (phase 1).
+    """A main-sequence star on its way from zero age to the exhaustion of hydrogen.
 
     Parameters
     ----------
     mass : float  [solMass]
     radius : float  [solRad]
     phase : float
-        Burnt fraction of the central hydrogen; grows by 1/lifetime(m) a year, with the
-        present mass, untouched by loss and gain.
+        Burnt fraction tau, 0 at zero age, 1 where the main sequence ends. Trial states
+        outside have the values of the ends.
     keys : MainSequenceKeys
 
     Returns
     -------
     Structure
-        R_eq = R_zero rho^(0.53 tau + 0.47 tau^3), L = L_zero 2.4^tau; thermal = growth +
-        ln(R_eq/R) R L/(G m2).
+        `equilibrium` R_zero rho^(0.53 tau + 0.47 tau^3), rho = 1.6 below 1.583 solMass and
+        1.61 m^0.83/R_zero above; `luminosity` L_zero 2.4^tau; `thermal` ln(R_eq/R) R L/(G m^2)
+        plus the growth of R_eq; `phase_rate` 1/lifetime of the present mass.
 
     Notes
     -----
-    rho = 1.6 below 1.583 solar masses and 1.61 m^0.83/R_zero above; the exponents are set so
-    that one solar mass has the Sun's radius and luminosity at 4.57 Gyr. A stand-in: it knows
-    neither the hook at the end nor the mixing of an accretor, and does not join the model
-    `dwarf`, whose relaxation is 26 times faster at 0.8 solar masses.
+    A stand-in, made so that one solar mass has the Sun's radius and luminosity at 4.57 Gyr.
+    Loss and gain of mass leave tau as it is: no rejuvenation, no memory of a larger core. A
+    history of an evolved donor that matters wants the user's own track.
+
+    It does not join the model of a dwarf: at 0.8 solMass it relaxes 26 times more slowly, on
+    the Kelvin-Helmholtz time of the whole star. Convective (so that braking acts) below 1.25
+    solMass; the flag jumps there.
 
     References
     ----------
-    Tout et al. 1996, MNRAS 281, 257; Hurley, Pols & Tout 2000, MNRAS 315, 543, eq. 4;
-    Demircan & Kahraman 1991, Ap&SS 181, 313 (radius at the end; all coefficients from memory).
+    Tout, Pols, Eggleton & Han 1996, MNRAS 281, 257 (zero age); Hurley, Pols & Tout 2000, MNRAS
+    315, 543 (lifetime); Demircan & Kahraman 1991, Ap&SS 181, 313 (final radius); all three
+    with coefficients from memory. D'Antona, Mazzitelli & Ritter 1989, A&A 225, 391 (three
+    terms of the radius).
     """
-    m = 0.1 if mass < 0.1 else (100.0 if mass > 100.0 else mass)
-    tau = 0.0 if phase < 0.0 else (1.0 if phase > 1.0 else phase)
-    start = zero_age_radius(m)
-    stretch = log(1.6) if m < BEND else log(1.61 * m**0.83 / start)
-    years = lifetime(m)
-    equilibrium = start * 2.718281828459045 ** (stretch * tau * (0.53 + 0.47 * tau * tau))
-    luminosity = zero_age_luminosity(m) * 2.718281828459045 ** (LOG_LIGHT * tau)
-    growth = stretch * (0.53 + 1.41 * tau * tau) / years if phase < 1.0 else 0.0
-    relaxation = radius * luminosity / (GRAVITATIONAL_TIME * m * m)
-    thermal = growth + relaxation * log(equilibrium / radius)
-    zeta = adiabatic_exponent(m) if keys.zeta_ad < -1.0 else keys.zeta_ad
-    temperature = T_SUN * (luminosity / (radius * radius)) ** 0.25
-    low, high = CONVECTIVE
-    convective = 1.0 if low <= m <= high else 0.0
-    envelope = convective * (m if m <= 0.35 else m * (0.35 / m) ** 6)
-    depth = convective * (radius if m <= 0.35 else 0.3 * radius)
+    tau = phase
+    if tau < 0.0:
+        tau = 0.0
+    elif tau > 1.0:
+        tau = 1.0
+    span = lifetime(mass)
+    start = zero_age_radius(mass)
+    growth = SMALL_GROWTH
+    if mass > BEND:
+        growth = log(1.61 * mass**0.83 / start)
+    square = tau * tau
+    equilibrium = start * exp(growth * tau * (0.53 + 0.47 * square))
+    luminosity = zero_age_luminosity(mass) * exp(BRIGHTENING * tau)
+    thermal = relaxation_rate(mass * mass, radius, equilibrium, luminosity)
+    thermal += growth * (0.53 + 1.41 * square) / span
+    zeta = keys.zeta_ad
+    if isnan(zeta):
+        zeta = adiabatic_exponent(mass)
+    envelope, depth = convective_envelope(mass, radius)
     return Structure(
-        radius, equilibrium, luminosity, temperature, zeta, thermal, 1.0 / years, 0.0, convective,
-        envelope, depth,
+        radius, equilibrium, luminosity, effective_temperature(radius, luminosity), zeta, thermal,
+        1.0 / span, 0.0, 1.0 if mass < RADIATIVE else 0.0, envelope, depth,
     )  # fmt: skip
 
 
-def prepare(mass, values):
-    """Keys; the age and the burnt fraction exclude each other."""
-    if values.get("age") and values.get("burnt"):
-        raise DomainError("give one of burnt and age, not both")
-    given = {name: values[name] for name in MainSequenceKeys._fields if values.get(name) is not None}
-    if given.get("age", 0.0) >= lifetime(mass):
-        raise DomainError(
-            f"age {given['age']:.4g} yr exceeds the main-sequence lifetime of {mass:g} Msun, "
-            f"{lifetime(mass):.4g} yr"
-        )
-    return MainSequenceKeys(**given)
-
-
 def start_phase(mass, values):
-    """Burnt fraction at the start."""
-    if values.get("age"):
-        return values["age"] / lifetime(mass)
-    return values.get("burnt") or 0.0
+    """Burnt fraction at the start.
+
+    Parameters
+    ----------
+    mass : float  [solMass]
+    values : dict
+        `burnt` or `age` [yr].
+
+    Returns
+    -------
+    float
+
+    Raises
+    ------
+    DomainError
+        Both are given, or the main sequence of this mass is over at that age.
+    """
+    burnt, age = given(values, "burnt"), given(values, "age")
+    if isnan(age):
+        return 0.0 if isnan(burnt) else burnt
+    if not isnan(burnt):
+        raise DomainError("give burnt or age, not both: one follows from the other")
+    span = lifetime(mass)
+    if age >= span:
+        raise DomainError(
+            f"at age {age:.4g} yr the main sequence of {mass:g} solMass is over; it lasts "
+            f"{span:.4g} yr"
+        )
+    return age / span
+
+
+def prepare(mass, values):
+    """The keys of a main-sequence star from the values of a config.
+
+    Parameters
+    ----------
+    mass : float  [solMass]
+        At the start.
+    values : dict
+        Optionally `burnt` or `age`, `zeta_ad`.
+
+    Returns
+    -------
+    MainSequenceKeys
+
+    Raises
+    ------
+    DomainError
+        As `start_phase`.
+    """
+    start_phase(mass, values)
+    return MainSequenceKeys(
+        given(values, "burnt"), given(values, "age"), given(values, "zeta_ad")
+    )
 
 
 MODEL = StarModel(
@@ -126,8 +220,11 @@ MODEL = StarModel(
     start_phase=start_phase,
     overflows=True,
     mass_range=(0.1, 100.0),
-    gyration=0.075,
+    gyration=0.075,  # n = 3 polytrope
     kind="gas",
-    sources=("tout-1996", "hurley-pols-tout-2000", "demircan-kahraman-1991"),
-    validity="0.1..100 solar masses, Z = 0.02, until hydrogen is exhausted; a stand-in",
-)
+    sources=(
+        "tout-1996", "hurley-pols-tout-2000", "demircan-kahraman-1991",
+        "dantona-mazzitelli-ritter-1989",
+    ),
+    validity="0.1..100 solMass, Z = 0.02, to the end of the main sequence: a stand-in for a track",
+)  # fmt: skip

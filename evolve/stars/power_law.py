@@ -1,57 +1,81 @@
-"""A star whose radius is a power of its mass."""
+"""A star whose radius is a power of its mass, of the user's choice."""
 
-from evolve.constants import T_SUN
-from evolve.laws.contract import Annotated, Key, NamedTuple
+from math import nan
+from typing import Annotated, NamedTuple
+
+from evolve.laws.contract import Key
 from evolve.stars.contract import StarModel, Structure
-from evolve.stars.zero_age import zero_age_luminosity
+from evolve.stars.surface import given, given_light, light
 
 
 class PowerLawKeys(NamedTuple):
-    """Keys of a power law; `start_mass` is the mass at the start."""
+    """Keys of a power law. `start_mass` [solMass] is the mass at which it has `radius`."""
 
-    radius: Annotated[float, Key("solRad", 0.0, 1e5, "radius at the starting mass", True)]
-    exponent: Annotated[float, Key("", -20.0, 20.0, "d ln R / d ln m")]
+    radius: Annotated[float, Key("solRad", 0.0, 1e6, "at the starting mass", open_low=True)]
+    exponent: Annotated[float, Key("", -10.0, 20.0, "d ln R / d ln m")]
     luminosity: Annotated[
-        float, Key("solLum", 0.0, 1e8, "luminosity; by the zero-age main sequence if not given")
-    ] = 0.0
+        float, Key("solLum", 0.0, 1e9, "constant; default: zero-age of the mass", open_low=True)
+    ] = nan
+    temperature: Annotated[
+        float, Key("K", 0.0, 1e7, "effective, constant; in place of luminosity", open_low=True)
+    ] = nan
     start_mass: float = 1.0
 
 
 def structure(mass, radius, phase, keys):
-    """R = R0 (m/m0)^exponent, whatever happens.
+    """A star of radius R0 (m/m0)^zeta.
 
     Parameters
     ----------
     mass : float  [solMass]
     radius, phase : float
-        Ignored.
+        Not used.
     keys : PowerLawKeys
 
     Returns
     -------
     Structure
+        Counts as convective throughout; braking acts where it is asked for.
 
     Notes
     -----
-    Convective, so that braking and tides may act on it; constant luminosity.
+    A stand-in of the user's own: nothing here knows whether such a star exists. It answers mass
+    loss at once with its exponent and has no thermal time.
 
     References
     ----------
-    None: the user's choice.
+    Tout, Pols, Eggleton & Han 1996, MNRAS 281, 257 (luminosity, if none is given).
     """
     size = keys.radius * (mass / keys.start_mass) ** keys.exponent
-    temperature = T_SUN * (keys.luminosity / (size * size)) ** 0.25
+    luminosity, temperature = light(mass, size, keys.luminosity, keys.temperature)
     return Structure(
-        size, size, keys.luminosity, temperature, keys.exponent, 0.0, 0.0, 0.0, 1.0, mass, size
+        size, size, luminosity, temperature, keys.exponent, 0.0, 0.0, 0.0, 1.0, mass, size
     )
 
 
 def prepare(mass, values):
-    """Keys with the starting mass and, if none is given, a luminosity."""
-    light = values.get("luminosity")
-    if light is None:
-        light = zero_age_luminosity(min(max(mass, 0.1), 100.0))
-    return PowerLawKeys(values["radius"], values["exponent"], light, mass)
+    """The keys of a power-law star from the values of a config.
+
+    Parameters
+    ----------
+    mass : float  [solMass]
+        At the start, where the star has its `radius`.
+    values : dict
+        `radius`, `exponent`, and optionally `luminosity` or `temperature`.
+
+    Returns
+    -------
+    PowerLawKeys
+
+    Raises
+    ------
+    DomainError
+        Luminosity and temperature both given.
+    """
+    luminosity, temperature = given_light(values)
+    return PowerLawKeys(
+        given(values, "radius"), given(values, "exponent"), luminosity, temperature, mass
+    )
 
 
 MODEL = StarModel(
@@ -63,9 +87,9 @@ MODEL = StarModel(
     phase="",
     start_phase=None,
     overflows=True,
-    mass_range=(1e-6, 1e4),
-    gyration=0.205,
+    mass_range=(1e-10, 1e10),
+    gyration=0.205,  # n = 3/2 polytrope
     kind="gas",
     sources=("tout-1996",),
-    validity="wherever the user's exponent means anything",
+    validity="as far as the user's own exponent goes",
 )
