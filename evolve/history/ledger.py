@@ -28,26 +28,33 @@ class Ledger:
         self.start = {name: float(value) for name, value in start.items()}
         self.end = {name: float(value) for name, value in end.items()}
 
-    def total(self, entry):
+    def total(self, entry, kind=None):
         """Sum of an entry over all chapters, in its unit.
+
+        Parameters
+        ----------
+        entry : str
+            "waves", "braking_A"; or without the component, for the sum over both.
+        kind : str, optional
+            "angular_momentum" or "mass", where both have an entry of that name (by default
+            the former).
 
         Raises
         ------
         KeyError
             Naming the entries there are.
         """
-        books = {**self.angular_momentum, **self.mass}
-        if entry in books:
-            return float(np.sum(books[entry]))
-        parts = [name for name in books if name.rpartition("_")[0] == entry]
-        if not parts:
-            raise KeyError(f'the ledger has no "{entry}"; it has {", ".join(books)}')
-        return float(sum(np.sum(books[name]) for name in parts))
+        for books in [getattr(self, kind)] if kind else [self.angular_momentum, self.mass]:
+            parts = [n for n in books if n == entry or n.rpartition("_")[0] == entry]
+            if parts:
+                return float(sum(np.sum(books[name]) for name in parts))
+        known = dict.fromkeys([*self.angular_momentum, *self.mass])
+        raise KeyError(f'the ledger has no "{entry}"; it has {", ".join(known)}')
 
     def share(self, entry):
         """Part of the orbit's whole angular-momentum change that an entry took."""
         whole = sum(float(np.sum(values)) for values in self.angular_momentum.values())
-        return self.total(entry) / whole if whole else 0.0
+        return self.total(entry, "angular_momentum") / whole if whole else 0.0
 
     @property
     def residuals(self):
