@@ -203,9 +203,7 @@ SECTIONS = {
         "tides; [tides] for both components, [tides.A] for one",
         {"spin": Entry("of the star at the start; else that of the orbit", "spin", 0.0, 1e9)},
         {
-            "law": Choice(
-                "tides", "off", "off", "torque of the tides", own_code=True, when_there="hut-1981"
-            )
+            "law": Choice("tides", "off", "off", "torque of the tides", when_there="hut-1981")
         },
         by_component=True,
         autos=("k_over_t",),
@@ -266,6 +264,10 @@ END_OF_COMPONENT = {"mass_below": _positive("mass", "ends the run below this mas
 """Keys of [end.A] and [end.B]."""
 
 
+COMMON = ("mass", "star", "radius", "temperature", "luminosity", "gyration")
+"""Keys that stand in every completed component; None where the model has no such key."""
+
+
 def star_entries(model):
     """The keys that a component of one star model takes.
 
@@ -281,40 +283,16 @@ def star_entries(model):
         "mass": _positive("mass", "at the start", high=1e12),
         "star": Entry("radius model", words=tuple(stars.MODELS), default=REQUIRED),
     }
-    entries |= {
-        name: _absent_if_common(entry_of_key(*both), name)
-        for name, both in described_keys(model.keys).items()
-    }
+    entries |= {name: entry_of_key(*both) for name, both in described_keys(model.keys).items()}
     for name, text in model.texts.items():
         kind = "value" if text.choices else "table" if name == "table" else "text"
         default = text.default or None
         entries[name] = Entry(text.doc, words=text.choices or (), default=default, kind=kind)
-    if model.relaxing:
-        known = entries.get("radius", _positive("length", "at the start"))
-        entries["radius"] = known._replace(words=("lobe",))
-    return entries | {
-        name: entry for name, entry in _common_entries(model).items() if name not in entries
-    }
-
-
-COMMON = ("mass", "star", "radius", "temperature", "luminosity", "gyration")
-"""Keys that stand in every completed component; None where they are not given."""
-
-
-def _common_entries(model):
-    """Keys of every star, and of those that have no light of their own."""
-    entries = {"gyration": Entry("k2 of the moment of inertia k2 m R2", "number", 0.0, 1.0)}
-    if "temperature" in model.keys._fields:
-        entries["temperature"] = _positive("temperature", "effective", high=1e9)
-    if "luminosity" in model.keys._fields:
-        entries["luminosity"] = _positive("luminosity", "constant", high=1e12)
+    if model.relaxing and "radius" not in entries:
+        radius = _positive("length", "at the start, out of equilibrium")
+        entries["radius"] = radius._replace(words=("lobe",))
+    entries["gyration"] = Entry("k2 of the moment of inertia k2 m R2", "number", 0.0, 1.0)
     return entries
-
-
-def _absent_if_common(entry, name):
-    """What a star does without a common key it decides itself, so it is told nothing."""
-    given = entry.default is REQUIRED or name not in COMMON
-    return entry if given else entry._replace(default=None)
 
 
 def entry_of_key(key, default):
@@ -368,7 +346,7 @@ def star_keys():
 
 
 __all__ = [
-    "COMMON", "END_OF_COMPONENT", "ENGINES", "EVENTS", "METHODS", "REQUIRED", "SECTIONS", "SIZES", "TOP",
-    "Choice", "Entry", "Section", "choice_entries", "entry_of_key", "law_entries", "laws_of",
-    "names_of", "star_entries", "star_keys",
+    "COMMON", "END_OF_COMPONENT", "ENGINES", "EVENTS", "METHODS", "REQUIRED", "SECTIONS", "SIZES",
+    "TOP", "Choice", "Entry", "Section", "choice_entries", "entry_of_key", "law_entries",
+    "laws_of", "names_of", "star_entries", "star_keys",
 ]  # fmt: skip

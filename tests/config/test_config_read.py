@@ -153,7 +153,7 @@ def test_tides_name_their_law_by_standing_there():
 def test_keys_of_every_star_and_of_those_without_a_light_of_their_own():
     values = read_config(pair(B={"temperature": "15000 K", "gyration": 0.1})).values["B"]
     assert values["temperature"] == 15000.0 and values["gyration"] == 0.1
-    assert read_config(PAIR).values["B"]["temperature"] is None
+    assert read_config(PAIR).values["A"]["temperature"] is None
     with pytest.raises(ConfigError, match="A.temperature = 3000: belongs to .*white-dwarf.*, not to dwarf"):
         read_config(pair(A={"temperature": 3000}))
     with pytest.raises(ConfigError, match='B.radius = "lobe": belongs to'):
@@ -227,6 +227,20 @@ def test_a_size_takes_the_place_of_another():
     assert any("orbit.fill is left out" in warning for warning in config.warnings)
     with pytest.raises(ConfigError, match="contradicts"):
         read_config(PAIR, set=["orbit.period=6 h", "orbit.separation=2 Rsun"])
+
+
+def test_changing_a_config_leaves_the_first_alone():
+    config = read_config(pair(braking={"law": "andronov-2003"}))
+    raw, values = copy.deepcopy(config.raw), copy.deepcopy(config.values)
+    config.with_values({"orbit.period": "6 h", "braking.law": "off", "end.A.mass_below": 0.1})
+    assert config.raw == raw and config.values == values
+
+
+def test_a_ceiling_brings_the_keys_that_no_star_has():
+    values = read_config(pair(acceptance={"ceiling": "eddington", "hydrogen": 0.5})).values
+    assert values["acceptance"] == {"ceiling": "eddington", "hydrogen": 0.5, "share": 1.0}
+    with pytest.raises(ConfigError, match='acceptance.radius = 1: unknown key.*"A.radius" meant'):
+        read_config(pair(acceptance={"ceiling": "eddington", "radius": 1}))
 
 
 def test_a_law_takes_its_own_keys_along():
@@ -361,6 +375,52 @@ def test_every_law_is_completed_with_its_keys(section, name):
     values = read_config(pair(**{section: {"law": name, **needed}})).values[section]
     values = values["A"] if SECTIONS[section].by_component else values
     assert set(law_entries(laws.TABLES[section][name])) <= set(values)
+
+
+STARS = {
+    "compact": {"mass": 1.4, "kind": "neutron-star"},
+    "power-law": {"mass": 0.5, "radius": 0.5, "exponent": 0.8},
+    "white-dwarf": {"mass": 0.6},
+    "helium-star": {"mass": 0.2, "semi_degenerate": True, "temperature": "20000 K"},
+    "dwarf": {"mass": 0.5, "inflation": 0.05},
+    "main-sequence": {"mass": 5.0, "age": "10 Myr"},
+    "giant": {"mass": 1.0, "core_mass": "0.25 Msun", "relation": "rappaport-1995"},
+    "expanding": {"mass": 1.0, "radius": "2 Rsun", "growth_time": "100 Myr"},
+    "track": {"mass": 1.0, "table": "track.csv", "age": "1 Gyr"},
+}
+TRACK = "age [Gyr], mass, radius, core_mass\n0,1,0.9,0\n2,1,0.95,0\n5,1,1,0\n9,1,1.1,0.1\n"
+
+
+@pytest.mark.parametrize("name", stars.MODELS)
+def test_every_star_completes_to_itself(tmp_path, monkeypatch, name):
+    (tmp_path / "track.csv").write_text(TRACK)
+    monkeypatch.chdir(tmp_path)
+    raw = pair(A={"star": name, **STARS[name]}, orbit={"fill": 0.5})
+    config = read_config(raw)
+    again = read_config_text(config.completed_text(), config.files)
+    assert again.values == config.values and again.values["A"]["star"] == name
+    if name == "track":
+        assert config.values["A"]["age"] == 1e9
+        assert config.values["A"]["table"]["age"] == [0.0, 2e9, 5e9, 9e9]
+        assert config.values["A"]["table"]["core_mass"][-1] == 0.1
+    if name == "helium-star":
+        assert config.values["A"]["semi_degenerate"] == "true"
+
+
+@pytest.mark.parametrize(
+    ("name", "keys", "fragment"),
+    [
+        ("main-sequence", {"burnt": 0.5}, r'config: A: .*burnt.*star = "main-sequence"'),
+        ("expanding", {"luminosity": 3, "temperature": 5000}, "config: A: .*luminosity.*temperature"),
+        ("expanding", {"radius": "lobe"}, 'A.radius = "lobe": not a number with a unit'),
+        ("giant", {"mass": 0.25}, "config: A: .*leaves no envelope"),
+        ("helium-star", {"semi_degenerate": False}, "config: A: temperature belongs to"),
+        ("helium-star", {"semi_degenerate": 1}, 'semi_degenerate = 1: .*allowed: "true", "false"'),
+    ],
+)
+def test_stars_that_cannot_be(name, keys, fragment):
+    with pytest.raises(ConfigError, match=fragment):
+        read_config(pair(A={"star": name, **STARS[name], **keys}))
 
 
 def test_a_config_is_frozen():
