@@ -48,9 +48,16 @@ def time_ticks(position, time, count=6):
     -------
     positions : list of float
     labels : list of str
-        With units; three significant digits, fewer where that tells neighbours apart.
+        With units; where three digits do not tell a time from the one before, the time left
+        to the end instead.
     """
     wanted = np.linspace(0.0, 1.0, count)
     times = np.interp(wanted, position, time)
-    labels = [human(value, "time", 3) if value else "0" for value in times]
+    labels = []
+    for value in times:
+        label = human(value, "time", 3) if value else "0"
+        if label in labels:
+            left = time[-1] - value
+            label = f"end \u2212 {human(left, 'time', 2)}" if left > 0.0 else "end"
+        labels.append(label)
     return wanted.tolist(), labels

@@ -2,6 +2,8 @@
 
 import numpy as np
 
+from evolve.config.units import human
+from evolve.constants import HOURS_PER_YEAR
 from evolve.figures.axes import stretched_time, time_ticks
 from evolve.figures.style import (
     COMPONENT,
@@ -15,8 +17,8 @@ from evolve.figures.style import (
 )
 from evolve.studies.compare import abscissa_of
 
-RATE_FLOOR = 1e-5
-"""Rates below this share of the largest are not drawn."""
+RATE_FLOOR, RATE_OF_INTEREST = 1e-5, 1e-13
+"""Rates below this share of the largest, and below this many Msun/yr, are not drawn."""
 QUIET = ("start", "end", "masses_equal")
 EVENT_WORDS = {
     "period_minimum": "P min", "period_maximum": "P max", "braking_stops": "braking stops",
@@ -45,8 +47,13 @@ def history_figure(histories, names=None, on="time"):
     """
     histories = histories if isinstance(histories, (list, tuple)) else [histories]
     names = names or [history.title or f"history {n}" for n, history in enumerate(histories, 1)]
-    figure = new_figure(7.0, 7.2)
-    panels = figure.subplots(4, 1, sharex=True, height_ratios=(3, 2, 3, 2))
+    flows = any(_rates(history) for history in histories)
+    heights = {"period": 3, "mass": 2, "rate": 3, "fill": 2}
+    if not flows:
+        del heights["rate"]
+    figure = new_figure(7.0, 0.72 * sum(heights.values()))
+    axes = figure.subplots(len(heights), 1, sharex=True, height_ratios=list(heights.values()))
+    panels = dict(zip(heights, axes, strict=True))
     alone = len(histories) == 1
     for number, history in enumerate(histories):
         rows, x = _abscissa(history, on, alone)
@@ -79,7 +86,8 @@ def _rates(history):
             if values is not None and values.max() > 0.0:
                 found.append((name, c, values))
     largest = max((values.max() for _, _, values in found), default=0.0)
-    return [(n, c, np.where(v > RATE_FLOOR * largest, v, np.nan)) for n, c, v in found]
+    floor = min(RATE_FLOOR * largest, RATE_OF_INTEREST)
+    return [(n, c, np.where(v > floor, v, np.nan)) for n, c, v in found]
 
 
 def _log_rates(history):
@@ -93,51 +101,54 @@ def _draw(panels, history, rows, x, number):
     def of(c):
         return {"color": color or COMPONENT[c], "lw": 1.2 if c == "A" else 0.9, **dash}
 
-    panels[0].plot(x, history["period"][rows], color=color or "black", **dash)
+    panels["period"].plot(x, history["period"][rows], color=color or "black", **dash)
     for c in "AB":
-        panels[1].plot(x, history[f"mass_{c}"][rows], label=c, **of(c))
-        panels[3].plot(x, history[f"fill_{c}"][rows], label=c, **of(c))
+        panels["mass"].plot(x, history[f"mass_{c}"][rows], label=c, **of(c))
+        panels["fill"].plot(x, history[f"fill_{c}"][rows], label=c, **of(c))
     for name, c, values in _rates(history):
         style = {"overflow": {}, "wind": {"alpha": 0.6}, "captured": {"linestyle": ":"}}[name]
-        panels[2].plot(x, values[rows], label=f"{name} of {c}", **{**of(c), **style})
+        panels["rate"].plot(x, values[rows], label=f"{name} of {c}", **{**of(c), **style})
 
 
 def _finish(panels, histories, names, on, alone):
-    period, masses, rates, fill = panels
+    period, masses, fill = (panels[name] for name in ("period", "mass", "fill"))
     period.set_yscale("log")
-    period.set_ylabel("period [h]")
+    _period_ticks(period)
     masses.set_ylabel(label_of("mass_A", "mass"))
-    rates.set_ylabel(label_of("overflow_A", "mass flow"))
-    if any(_rates(history) for history in histories):
+    if rates := panels.get("rate"):
+        rates.set_ylabel(label_of("overflow_A", "mass flow"))
         rates.set_yscale("log")
-    else:
-        rates.text(0.5, 0.5, "nothing flows", transform=rates.transAxes, ha="center", color="0.5")
-        rates.set_yticks([])
+        if alone and len(rates.lines) > 1:
+            rates.legend(ncols=3, loc="best")
     fill.set_ylabel(r"$R\,/\,R_L$")
     fill.axhline(1.0, color="0.6", lw=0.6, zorder=0)
     fill.set_ylim(0.0, max(1.15, min(1.3, fill.get_ylim()[1])))
     if alone:
         masses.legend(ncols=2, loc="best", title=None)
-        if len(rates.lines) > 1:
-            rates.legend(ncols=3, loc="best")
     else:
         handles = [line for line in period.lines[: len(histories)]]
         period.legend(handles, names, loc="best")
-        masses.text(0.99, 0.06, "A thick, B thin", transform=masses.transAxes, ha="right",
-                    fontsize=7, color="0.35")  # fmt: skip
-    _plain_log_ticks(period)
+        masses.set_title("A thick, B thin", loc="right", fontsize=7, color="0.35", pad=2)
     _label_abscissa(fill, histories, on, alone)
 
 
-def _plain_log_ticks(axis):
-    """Periods in plain numbers: nobody reads 10^0.5 hours."""
+def _period_ticks(axis):
+    """Periods in plain numbers, over many decades each with its own unit."""
     from matplotlib.ticker import FuncFormatter, LogLocator, NullFormatter
 
     low, high = axis.get_ylim()
     wide = high / low > 50.0
-    axis.yaxis.set_major_locator(LogLocator(subs=(1.0,) if wide else (1.0, 1.5, 2.0, 3.0, 4.0, 5.0, 7.0)))
-    axis.yaxis.set_major_formatter(FuncFormatter(lambda value, _: f"{value:g}"))
+    subs = (1.0,) if wide else (1.0, 1.5, 2.0, 3.0, 4.0, 5.0, 7.0)
+    axis.yaxis.set_major_locator(LogLocator(subs=subs))
     axis.yaxis.set_minor_formatter(NullFormatter())
+    if wide:
+        axis.set_ylabel("period")
+        axis.yaxis.set_major_formatter(
+            FuncFormatter(lambda value, _: human(value / HOURS_PER_YEAR, "time", 3))
+        )
+    else:
+        axis.set_ylabel("period [h]")
+        axis.yaxis.set_major_formatter(FuncFormatter(lambda value, _: f"{value:g}"))
 
 
 def _label_abscissa(axis, histories, on, alone):
@@ -167,12 +178,13 @@ def _chapters(panels, history, rows, x):
         if first < 0 or last >= len(x):
             continue
         left, right = x[first], x[last]
-        for panel in panels:
+        for panel in panels.values():
             panel.axvspan(left, right, color=REGIME[chapter.regime], lw=0, zorder=-5)
         extent = abs(x[-1] - x[0]) or 1.0
         if abs(right - left) > 0.1 * extent:
-            panels[3].text(0.5 * (left + right), 0.04, REGIME_WORDS[chapter.regime],
-                           transform=panels[3].get_xaxis_transform(), ha="center", va="bottom",
+            fill = panels["fill"]
+            fill.text(0.5 * (left + right), 0.55, REGIME_WORDS[chapter.regime],
+                           transform=fill.get_xaxis_transform(), ha="center", va="bottom",
                            fontsize=6.5, color="0.35")  # fmt: skip
 
 
@@ -184,7 +196,7 @@ def _events(panels, history, rows, x):
         row = event.row - start
         if event.name in QUIET or not 0 <= row < len(x):
             continue
-        for panel in panels:
+        for panel in panels.values():
             panel.axvline(x[row], color="0.55", lw=0.5, ls=(0, (2, 2)), zorder=-1)
         place = float(x[row])
         if taken and place - taken[-1] < 0.022 * extent:
@@ -192,9 +204,9 @@ def _events(panels, history, rows, x):
         taken.append(place)
         words = EVENT_WORDS.get(event.name, event.name.replace("_", " "))
         words += f" ({event.component})" if event.component and event.name == "contact" else ""
-        panels[0].annotate(
-            words, (x[row], 1.0), (place, 1.02), xycoords=panels[0].get_xaxis_transform(),
-            textcoords=panels[0].get_xaxis_transform(), rotation=60, fontsize=6.5, va="bottom",
+        top = panels["period"].get_xaxis_transform()
+        panels["period"].annotate(
+            words, (x[row], 1.0), (place, 1.02), xycoords=top, textcoords=top, rotation=60, fontsize=6.5, va="bottom",
             ha="left", annotation_clip=False, color="0.2",
         )  # fmt: skip
 
@@ -230,8 +242,8 @@ def rate_period_figure(histories, names=None, gap=False):
     axis.set_ylabel(label_of("overflow_A", "overflow"))
     if gap:
         axis.axvspan(*OBSERVED_GAP, color="0.88", lw=0, zorder=-5)
-        axis.text(np.sqrt(np.prod(OBSERVED_GAP)), 0.97, "observed gap", fontsize=6.5, ha="center",
-                  va="top", transform=axis.get_xaxis_transform(), color="0.35")  # fmt: skip
+        axis.text(np.sqrt(np.prod(OBSERVED_GAP)), 0.02, "observed gap", fontsize=6.5, ha="center",
+                  va="bottom", transform=axis.get_xaxis_transform(), color="0.35")  # fmt: skip
     if len(histories) > 1:
         axis.legend(loc="best")
     _plain_log_ticks_x(axis)
@@ -240,7 +252,8 @@ def rate_period_figure(histories, names=None, gap=False):
 
 def _total_overflow(history):
     total = sum(history.columns.get(f"overflow_{c}", 0.0) for c in "AB") + 0.0 * history["time"]
-    return np.where(total > RATE_FLOOR * max(total.max(), 1e-300), total, np.nan)
+    floor = min(RATE_FLOOR * max(total.max(), 1e-300), RATE_OF_INTEREST)
+    return np.where(total > floor, total, np.nan)
 
 
 def _plain_log_ticks_x(axis):
