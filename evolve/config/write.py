@@ -148,9 +148,8 @@ def completed_dict(config):
             result[c]["table"] = config.raw[c]["table"]
     for name, section in SECTIONS.items():
         if section.by_component:
-            result[name] = {
-                c: _section(section, values[name][c], config.user_laws, f":{c}") for c in "AB"
-            }
+            own = {c: _section(section, values[name][c], config.user_laws, f":{c}") for c in "AB"}
+            result[name] = own["A"] if own["A"] == own["B"] else own
         else:
             result[name] = _section(section, values[name], config.user_laws, "")
     for c in "AB":
@@ -168,11 +167,16 @@ def _section(section, values, user_laws, place):
             laws_here = {**laws_here, chosen: own}
         if isinstance(chosen, float):
             chosen = exact_text(chosen, choice.number.dimension)
+        if isinstance(chosen, dict) and list(chosen.values()) == [1.0]:
+            [chosen] = chosen
         written[key] = chosen
         named = laws_here if choice.standing else [chosen] if isinstance(chosen, str) else []
         for name in named:
             if name in laws_here:
                 entries |= choice_entries(choice, laws_here[name])
+    if written.get("law") == "off":  # of what does not act, only what was written
+        entries = {key: entry for key, entry in entries.items() if values[key] != entry.default}
+        written = {key: chosen for key, chosen in written.items() if chosen != "none"}
     return written | _written(values, entries)
 
 

@@ -92,6 +92,26 @@ def test_demo_configs_read_and_complete_to_themselves(path):
     assert read_config_text(config.text, config.files).values == config.values
 
 
+@pytest.mark.parametrize(
+    ("sections", "expected"),
+    [
+        ({}, ['[braking]\nlaw = "off"\n\n', '[wind]\nlaw = "off"\n\n', '[tides]\nlaw = "off"\n\n']),
+        ({"braking": {"law": "off", "stops_below": 0.3}}, ['law = "off"\nstops_below = "0.3 Msun"']),
+        ({"wind": {"A": {"law": "off", "capture": 0.2}}}, ['[wind.A]\nlaw = "off"\ncapture = 0.2']),
+        ({"braking": {"A": {"law": "andronov-2003"}}}, ["[braking.A]", '[braking.B]\nlaw = "off"']),
+        ({"expulsion": {"from": "ring"}}, ['[expulsion]\nfrom = "ring"\n']),
+        ({"overflow": {"scale_height": 2e-4}}, ["scale_height = 0.0002"]),
+        ({"orbit": {"eccentricity": 0.1}}, ["fill = 0.98\neccentricity = 0.1"]),
+    ],
+)
+def test_the_completed_text_is_short_and_reads_back(sections, expected):
+    config = read_config(pair(**sections))
+    text = config.completed_text()
+    for piece in expected:
+        assert piece in text
+    assert read_config_text(text).values == config.values
+
+
 def test_contact_is_a_fill_of_one():
     raw = pair()
     raw["orbit"] = {"contact": True}
