@@ -108,7 +108,7 @@ SOURCES = {
     "hut-1981": _s(
         "Hut, P.", 1981, "Tidal evolution in close binary systems", _AA, "99", "126",
     ),
-    "iau-2015-b3": _s(
+    "iau-2015": _s(
         "Prša, A.; Harmanec, P.; Torres, G.; and others", 2016,
         "Nominal Values for Selected Solar and Planetary Quantities: IAU 2015 Resolution B3",
         "The Astronomical Journal", "152", "41", "10.3847/0004-6256/152/2/41",

@@ -303,7 +303,12 @@ CAPTURE_TABLE = {
     "bondi-hoyle": Law(
         bondi_hoyle,
         CaptureKeys,
-        ("bondi-hoyle-1944", "boffin-jorissen-1988"),
+        (
+            "bondi-hoyle-1944",
+            "boffin-jorissen-1988",
+            "castor-abbott-klein-1975",
+            "lamers-snow-lindholm-1995",
+        ),
         "winds faster than the orbital motion; the share is capped at 0.8",
     ),
 }
