@@ -168,6 +168,8 @@ def _label_abscissa(axis, histories, on, alone):
     else:
         axis.set_xlabel(label_of(on))
         if on == "period":
+            axis.set_xscale("log")
+            _plain_log_ticks_x(axis)
             axis.invert_xaxis()
 
 

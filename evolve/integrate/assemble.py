@@ -5,7 +5,7 @@ import numpy as np
 from evolve.constants import ENERGY_PER_LUMINOSITY_YEAR, G, GRAVITATIONAL_TIME, HOURS_PER_YEAR
 from evolve.history import Chapter, Event, History, Ledger
 from evolve.integrate.outcomes import GOOD
-from evolve.system.equations import OTHER
+from evolve.system.layout import OTHER
 
 STAR_COLUMNS = ("radius", "lobe", "luminosity", "temperature")
 FLOW_COLUMNS = ("overflow", "wind", "captured", "accepted", "expelled")

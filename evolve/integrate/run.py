@@ -10,7 +10,7 @@ from evolve.integrate.outcomes import sentence
 from evolve.integrate.recorder import Recorder
 from evolve.integrate.stretch import InspiralStretch, TimeStretch
 from evolve.integrate.watches import CONTACT_MARGIN, WAKE, watches_for
-from evolve.system.equations import OTHER
+from evolve.system.layout import OTHER
 
 CHATTER = 25
 """So many events in a row without time passing between them are a fault, not a history."""

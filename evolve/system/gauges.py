@@ -14,7 +14,7 @@ def gauge_expressions(plan):
 
     Parameters
     ----------
-    plan : evolve.system.equations.Plan
+    plan : evolve.system.layout.Plan
 
     Returns
     -------

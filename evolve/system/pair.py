@@ -11,7 +11,8 @@ from evolve.errors import ConfigError
 from evolve.orbit.kepler import angular_momentum, mean_motion, period, separation_from_period
 from evolve.orbit.lobes import lobe_fraction
 from evolve.stars import MODELS
-from evolve.system.equations import OTHER, layout, write
+from evolve.system.equations import write
+from evolve.system.layout import OTHER, layout
 from evolve.system.plan import choose_laws, parameters_of, plan_of
 
 OVERFILL = 1e-3

@@ -9,7 +9,7 @@ from typing import NamedTuple
 from evolve.laws import find
 from evolve.laws.contract import NoKeys
 from evolve.stars import MODELS
-from evolve.system.equations import OTHER, Plan, PlanOfComponent, layout
+from evolve.system.layout import OTHER, Plan, PlanOfComponent, layout
 
 
 class Chosen(NamedTuple):
