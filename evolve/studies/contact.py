@@ -11,6 +11,9 @@ from evolve.studies.draws import distribution
 STATE = ("period", "separation", "eccentricity", "mass_A", "mass_B", "radius_A", "radius_B",
          "mass_ratio", "overflow_A", "overflow_B")  # fmt: skip
 
+FINEST = 1e-13
+"""No tolerance below this is asked for: it would be rounding."""
+
 
 class Contact(NamedTuple):
     """The answer of `contact`.
@@ -66,7 +69,7 @@ def contact(config, progress=None, search=True):
         return _no_contact(config, history, search)
     error = float("nan")
     if search:
-        finer = config.values["numerics"]["rtol"] * 0.1
+        finer = max(config.values["numerics"]["rtol"] * 0.1, FINEST)
         again = integrate(_to_contact(config.with_values({"numerics.rtol": finer})))
         error = abs(_contact_time(again) - event.time)
     return Contact(
@@ -139,9 +142,8 @@ def _needed_period(config, history):
     """Longest starting period that reaches contact within the span, to 0.1 %, by bisection."""
 
     def reaches(period):
-        written = {"orbit.period": f"{period!r} yr"}
-        written |= {key: None for key in ("orbit.separation", "orbit.fill", "orbit.contact")}
-        return bool(np.isfinite(_contact_time(integrate(_to_contact(config.with_values(written))))))
+        changed = config.with_values({"orbit.period": f"{float(period)!r} yr"})
+        return bool(np.isfinite(_contact_time(integrate(_to_contact(changed)))))
 
     start = history["period"][0] / HOURS_PER_YEAR
     fill = max(history["fill_A"][0], history["fill_B"][0])

@@ -188,21 +188,19 @@ def _transfer(plan, c, full):
     part = plan.components[c]
     if not (part.overflows or part.capture):
         return []
-    lines = []
-    if part.overflows and full and plan.overflow != "locked":
-        lines.append(f"excess_{c} = " + _excess(plan, c))
     if not part.overflows:
         return _specific(plan, c) + _balance(plan, c)
+    lines = [f"excess_{c} = " + _excess(plan, c)] * full
     flowing = _specific(plan, c) * (not part.capture)
     if full or plan.overflow == "locked":
-        flowing += _response(plan, c, full)
+        flowing += _response(plan, c)
     flowing += _overflow(plan, c)
     idle = [f"overflow_{c} = 0.0"]
     if full:
-        idle += [f"zeta_lobe_{c} = nan", f"excess_{c} = " + _excess(plan, c)]
+        idle.append(f"zeta_lobe_{c} = nan")
         idle += [f"drive_{c} = 0.0"] * (plan.overflow == "locked")
     if part.capture:
-        return _specific(plan, c) + _either(c, flowing, idle) + _balance(plan, c)
+        return lines + _specific(plan, c) + _either(c, flowing, idle) + _balance(plan, c)
     o = OTHER[c]
     idle.append(f"accepted_{o} = expelled_{o} = torque_expelled_{c} = 0.0")
     idle += [f"torque_consequential_{c} = 0.0"] * plan.consequential
@@ -248,14 +246,14 @@ def _zeta_lobe(plan, c, kept, name):
     ]
 
 
-def _response(plan, c, full):
+def _response(plan, c):
     """zeta_lobe and, with R = R_L imposed, how fast the star would grow past its lobe."""
     lines = [
         f"slope_{c} = lobe_slope(mass_{c} / mass_{OTHER[c]})",
         *_zeta_lobe(plan, c, "share", f"zeta_lobe_{c}"),
     ]
     if plan.overflow == "locked":
-        lines += _drive(plan, c) + [f"excess_{c} = " + _excess(plan, c)] * full
+        lines += _drive(plan, c)
     return lines
 
 

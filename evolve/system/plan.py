@@ -97,7 +97,8 @@ def _ceiling(acceptance, component):
         return None
     name = "rate" if isinstance(ceiling, float) else ceiling
     law = find("ceiling", name)
-    known = {**component, "rate": ceiling}
+    known = {**acceptance, **component, "rate": ceiling}
+    known["black_hole"] = float(component.get("kind") == "black-hole")
     filled = {f: known[f] for f in law.keys._fields if isinstance(known.get(f), float)}
     return Chosen(name, law, law.keys(**filled))
 
@@ -128,7 +129,8 @@ def plan_of(config, laws):
             functions[f"ceiling_{c}_rate"] = laws.ceiling[c].law.function
     if laws.waves:
         functions["waves_torque"] = laws.waves.law.function
-        functions["waves_eccentricity"] = laws.waves.law.second
+        if values["orbit"]["eccentricity"] > 0.0:
+            functions["waves_eccentricity"] = laws.waves.law.second
     if laws.overflow.name == "atmosphere":
         functions["overflow_excess"] = laws.overflow.law.second
     if laws.overflow.name != "locked":

@@ -185,4 +185,4 @@ def test_steady_rate_of_a_lobe_filling_white_dwarf(mass, share):
     zeta_lobe += slope * (1 + share * m / other)
     waves = mpmath.mpf(32) / 5 * mpmath.mpf(G) ** 3 * m * other * total / (C**5 * separation**4)
     expected = float(2 * m * waves / (zeta - zeta_lobe))
-    assert history["overflow_A"][-1] == pytest.approx(expected, rel=1e-8)
+    assert history["overflow_A"][-1] == pytest.approx(expected, rel=1e-8, abs=0.0)
