@@ -38,7 +38,7 @@ def structure(mass, radius, phase, keys):
     mass : float  [solMass]
     radius : float  [solRad]
     phase : float
-        Time since the start over the growth time.
+        Time since the start over the growth time; trial states before -1 count as -1.
     keys : ExpandingKeys
 
     Returns
@@ -58,6 +58,8 @@ def structure(mass, radius, phase, keys):
     D'Antona, Mazzitelli & Ritter 1989, A&A 225, 391 (three terms of the radius).
     """
     fold, growth = phase, 1.0
+    if fold < -1.0:
+        fold = -1.0
     beyond = phase - keys.folds + 1.0
     if beyond >= 2.0:
         fold, growth = keys.folds, 0.0
