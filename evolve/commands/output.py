@@ -6,6 +6,9 @@ from typing import NamedTuple
 from evolve.config.units import conversion_factor, dimension_of, human
 from evolve.history.columns import COLUMNS
 
+NO_TIME = 1e-15
+"""Times below this many years are steps to the next float, not times."""
+
 
 class Answer(NamedTuple):
     """What a command found.
@@ -70,6 +73,8 @@ def quantity(value, unit, digits=4):
         return "-"
     if unit in ("s", "min", "h", "d"):
         value, unit = value * conversion_factor(unit, "yr"), "yr"
+    if unit == "yr" and abs(value) < NO_TIME:
+        return "0 yr"
     return human(value, dimension_of(unit), digits)
 
 

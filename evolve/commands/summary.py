@@ -1,7 +1,6 @@
 """A history in words: events, end, ledger."""
 
 from evolve.commands.output import aligned, of_column, quantity, scalar, table
-from evolve.config.units import human
 from evolve.history.ledger import MASS_UNIT, MOMENTUM_UNIT
 
 WORDS = {
@@ -37,7 +36,7 @@ def event_lines(history):
     for event in history.events:
         name = event.name.replace("_", " ") + (f" of {event.component}" if event.component else "")
         rate = _flow(history, event.row)
-        cells = [name, human(event.time, "time", 5), of_column("period", history["period"][event.row])]
+        cells = [name, quantity(event.time, "yr", 5), of_column("period", history["period"][event.row])]
         if "eccentricity" in history.columns:
             cells.append(f"{history['eccentricity'][event.row]:.4f}")
         cells += [of_column(f"mass_{c}", history[f"mass_{c}"][event.row]) for c in "AB"]

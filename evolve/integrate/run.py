@@ -263,7 +263,7 @@ class Run:
         quantities = self.now()
         row = self.recorder.add(self.time, self.state, quantities)
         self.time = self.recorder.rows[row].time
-        if row and event != "start":
+        if self.openings and self.openings[-1].row < row - 1:
             gauge = self.pair.layout.gauges.index("period_rate")
             before = self.pair.gauges(self.recorder.rows[row - 1].quantities)[gauge]
             after = self.pair.gauges(quantities)[gauge]

@@ -21,7 +21,7 @@ its lobe), braking_A, braking_B.
 """
 
 from evolve.system.gauges import write_gauges
-from evolve.system.layout import OTHER, layout, receives, torque_slots
+from evolve.system.layout import OTHER, has_ceiling, layout, receives, torque_slots
 
 
 def write(plan):
@@ -178,9 +178,11 @@ def _wind(plan, c):
 
 def _ceiling(plan, c):
     """The most that component c accepts."""
-    if not (plan.ceiling and receives(plan, c)):
+    if not has_ceiling(plan, c):
         return []
-    return [f"ceiling_{c} = ceiling_{c}_rate(star_{c}, star_{OTHER[c]}, orbit, ceiling_keys_{c})"]
+    arguments = f"(star_{c}, star_{OTHER[c]}, orbit, ceiling_keys_{c})"
+    lines = [f"ceiling_{c} = retained_{c} * ceiling_{c}_rate{arguments}"]
+    return lines + [f"edge_{c} = ceiling_{c}_edge{arguments}"] * (plan.components[c].ceiling == "band")
 
 
 def _transfer(plan, c, full):
@@ -191,20 +193,24 @@ def _transfer(plan, c, full):
     if not part.overflows:
         return _specific(plan, c) + _balance(plan, c)
     lines = [f"excess_{c} = " + _excess(plan, c)] * full
+    o = OTHER[c]
     flowing = _specific(plan, c) * (not part.capture)
-    if full or plan.overflow == "locked":
-        flowing += _response(plan, c)
-    flowing += _overflow(plan, c)
+    if plan.overflow == "locked":
+        flowing += [f"kept_{o} = share_{o}", *_response(plan, c), *_overflow(plan, c)]
+        after = []
+    else:
+        flowing += _overflow(plan, c)
+        after = _marginal(plan, c) + _response(plan, c) if full else []
     idle = [f"overflow_{c} = 0.0"]
     if full:
         idle.append(f"zeta_lobe_{c} = nan")
         idle += [f"drive_{c} = 0.0"] * (plan.overflow == "locked")
     if part.capture:
-        return lines + _specific(plan, c) + _either(c, flowing, idle) + _balance(plan, c)
-    o = OTHER[c]
+        lines += _specific(plan, c) + _either(c, flowing, idle) + _balance(plan, c)
+        return lines + ([f"if flow_{c}:", *_indented(after)] if after else [])
     idle.append(f"accepted_{o} = expelled_{o} = torque_expelled_{c} = 0.0")
     idle += [f"torque_consequential_{c} = 0.0"] * plan.consequential
-    return lines + _either(c, flowing + _balance(plan, c), idle)
+    return lines + _either(c, flowing + _balance(plan, c) + after, idle)
 
 
 def _either(c, flowing, idle):
@@ -250,7 +256,7 @@ def _response(plan, c):
     """zeta_lobe and, with R = R_L imposed, how fast the star would grow past its lobe."""
     lines = [
         f"slope_{c} = lobe_slope(mass_{c} / mass_{OTHER[c]})",
-        *_zeta_lobe(plan, c, "share", f"zeta_lobe_{c}"),
+        *_zeta_lobe(plan, c, f"kept_{OTHER[c]}", f"zeta_lobe_{c}"),
     ]
     if plan.overflow == "locked":
         lines += _drive(plan, c)
@@ -270,8 +276,8 @@ def _drive(plan, c):
     for s in plan.order:
         if plan.components[s].capture:
             receiver = OTHER[s]
-            amount = f"share * captured_{s}"
-            if plan.ceiling:
+            amount = f"share_{receiver} * captured_{s}"
+            if has_ceiling(plan, receiver):
                 amount = f"min({amount}, ceiling_{receiver})"
             kept[receiver] = f"caught_{receiver}"
             lines.append(f"caught_{receiver} = {amount}")
@@ -296,12 +302,12 @@ def _overflow(plan, c):
     if plan.overflow != "locked":
         return [f"overflow_{c} = overflow_rate(star_{c}, star_{o}, orbit, overflow_keys)"]
     lines = [f"overflow_{c} = mass_{c} * drive_{c} / max(zeta_{c} - zeta_lobe_{c}, 1e-9)"]
-    if plan.ceiling:
+    if has_ceiling(plan, o):
         # The rate is piecewise linear: below the ceiling `share` of what comes on top is
         # kept, above it nothing. The piece that holds is the one its own rate lies in.
         before = f"captured_{c}" if part.capture else "0.0"
         lines += [
-            f"full_{c} = max(ceiling_{o} / share - {before}, 0.0) if share > 0.0 else 1e99",
+            f"full_{c} = max(ceiling_{o} / max(share_{o}, 1e-99) - {before}, 0.0)",
             f"if overflow_{c} > full_{c}:",
             *_indented(_zeta_lobe(plan, c, "0.0", f"beyond_{c}")),
             f"    rest_{c} = drive_{c} - full_{c} * (zeta_{c} - zeta_lobe_{c}) / mass_{c}",
@@ -316,11 +322,16 @@ def _balance(plan, c):
     reaching = " + ".join(
         [f"overflow_{c}"] * part.overflows + [f"captured_{c}"] * bool(part.capture)
     )
-    accepted = f"share * reaching_{o}"
-    if plan.ceiling:
-        accepted = f"min({accepted}, ceiling_{o})"
-    lines = [
-        f"reaching_{o} = {reaching}",
+    share, lines = f"share_{o}", [f"reaching_{o} = {reaching}"]
+    if plan.components[o].ceiling == "band":
+        share = f"kept_share_{o}"
+        lines.append(f"{share} = burning_share(reaching_{o}, share_{o}, edge_{o})")
+    accepted = f"{share} * reaching_{o}"
+    if has_ceiling(plan, o):  # with R = R_L imposed the rate is solved for the exact minimum
+        accepted = f"accepted_rate(reaching_{o}, {share}, ceiling_{o})"
+        if plan.overflow == "locked":
+            accepted = f"min({share} * reaching_{o}, ceiling_{o})"
+    lines += [
         f"accepted_{o} = {accepted}",
         f"expelled_{o} = reaching_{o} - accepted_{o}",
     ]
@@ -333,6 +344,15 @@ def _balance(plan, c):
     else:
         lines.append(f"torque_expelled_{c} = -expelled_{o} * specific_{c}")
     return lines
+
+
+def _marginal(plan, c):
+    """Share that the accretor would keep of a little more: none at its ceiling."""
+    o = OTHER[c]
+    if not has_ceiling(plan, o):
+        return [f"kept_{o} = share_{o}"]
+    share = f"kept_share_{o}" if plan.components[o].ceiling == "band" else f"share_{o}"
+    return [f"kept_{o} = {share} if {share} * reaching_{o} < ceiling_{o} else 0.0"]
 
 
 def _sums(plan):

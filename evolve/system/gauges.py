@@ -22,7 +22,9 @@ def gauge_expressions(plan):
         fill_c: ln(R/R_L); excess_c: (R - R_L)/H, or ln(R/R_L) where a law has no H;
         rate_c: ln of the overflow in solMass/yr; drive_c: growth past the lobe with R = R_L
         imposed [1/yr]; stability_c: zeta_star - zeta_lobe; runaway_c: positive when
-        R > 1.1 R_L or the donor empties itself within 100 dynamical times; mass_c: ln m;
+        R > 1.1 R_L or the donor empties itself within 100 dynamical times; mass_c: ln m; phase_c: the clock
+        of its model; envelope_c: mass outside the core [solMass]; ceiling_c: ln of what c
+        accepts over its ceiling;
         darwin: positive when no stable synchronous orbit exists, (I_A + I_B) n > J/3 (Hut
         1980, A&A 92, 167); merger: positive when a lobe or the last stable orbit is filled; log_period: ln P in
         yr; period_rate: d ln P/dt [1/yr]; mass_ratio: ln(m_A/m_B); time [yr].
@@ -31,6 +33,10 @@ def gauge_expressions(plan):
     for c in plan.order:
         gauges[f"mass_{c}"] = f"log(mass_{c})"
         gauges[f"fill_{c}"] = f"log(max(radius_{c}, 1e-99) / lobe_{c})"
+        if plan.components[c].phase:
+            gauges[f"phase_{c}"] = f"phase_{c}"
+        if plan.components[c].phase == "core":
+            gauges[f"envelope_{c}"] = f"mass_{c} - core_mass_{c}"
         if not plan.components[c].overflows:
             continue
         gauges[f"excess_{c}"] = f"excess_{c}"
@@ -42,6 +48,12 @@ def gauge_expressions(plan):
             f"max(log(radius_{c} / lobe_{c} / {RUNAWAY_FILL}), log(max(overflow_{c}, 1e-300)"
             f" * {RUNAWAY_DYNAMICAL_TIMES} * sqrt(radius_{c}**3 / (G * mass_{c})) / mass_{c}))"
         )
+    for c in plan.order:
+        other = plan.components["B" if c == "A" else "A"]
+        if plan.components[c].ceiling and (other.overflows or other.capture):
+            gauges[f"ceiling_{c}"] = (
+                f"log(max(accepted_{c}, 1e-300) / max(ceiling_{c}, 1e-300))"
+            )
     spins = [f"spin_momentum_{c} / spin_{c}" for c in plan.order if plan.components[c].tides]
     if spins:  # moments of inertia of the stars whose spins are followed
         gauges["darwin"] = f"log(3.0 * ({' + '.join(spins)}) * omega / angular_momentum)"

@@ -26,7 +26,6 @@ class Plan(NamedTuple):
     eccentric: bool
     waves: bool
     overflow: str
-    ceiling: bool
     expulsion: tuple[str, ...]
     consequential: bool
     imports: tuple[str, ...]
@@ -36,12 +35,13 @@ class PlanOfComponent(NamedTuple):
     """What one component brings: its star model and the laws that act on it."""
 
     relaxing: bool
-    phase: bool
+    phase: str  # name of its model's own clock, "" without one
     overflows: bool
     braking: bool
     wind: bool
     capture: str  # "", "law" or "share"
     tides: bool  # its spin is followed
+    ceiling: str  # on what it accepts: "", "plain" or "band" (all is kept between two edges)
     bare: bool  # in `rates`, while it does not overflow, only its mass acts
 
 
@@ -92,6 +92,7 @@ def layout(plan):
 
 
 def torque_slots(plan):
+    """The ledger's slots of angular momentum."""
     names = ["waves"] if plan.waves else []
     for c in plan.order:
         part = plan.components[c]
@@ -105,6 +106,7 @@ def torque_slots(plan):
 
 
 def flow_slots(plan):
+    """The ledger's slots of mass."""
     names = []
     for c in plan.order:
         part, other = plan.components[c], plan.components[OTHER[c]]
@@ -123,10 +125,11 @@ def _quantities(plan):
         part = plan.components[c]
         names += [f"{name}_{c}" for name in ("radius", "lobe", "luminosity", "temperature",
                                              "zeta", "core_mass")]  # fmt: skip
-        names += [f"phase_{c}"] * part.phase + [f"spin_{c}", f"spin_momentum_{c}"] * part.tides
+        names += [f"phase_{c}"] * bool(part.phase) + [f"spin_{c}", f"spin_momentum_{c}"] * part.tides
         if part.overflows:
             names += [f"zeta_lobe_{c}", f"excess_{c}"]
             names += [f"drive_{c}"] * (plan.overflow == "locked")
+        names += [f"ceiling_{c}"] * has_ceiling(plan, c)
     return names + torque_slots(plan) + flow_slots(plan)
 
 
@@ -137,24 +140,30 @@ def _parameters(plan):
         names += [f"braking_keys_{c}"] * part.braking + [f"wind_keys_{c}"] * part.wind
         names += [f"capture_keys_{c}"] * (part.capture == "law")
         names += [f"tides_keys_{c}"] * part.tides
-        if plan.ceiling and receives(plan, c):
-            names.append(f"ceiling_keys_{c}")
+        names += [f"ceiling_keys_{c}"] * has_ceiling(plan, c)
     names += ["overflow_keys"] * _has_excess(plan)
     names += [f"expulsion_keys_{way}" for way in plan.expulsion]
     return names + ["consequential_keys"] * plan.consequential
 
 
 def _settings(plan):
-    names = ["share", "momentum_low", "momentum_high"]
+    names = ["momentum_low", "momentum_high"]
     for c in plan.order:
+        names += [f"share_{c}"] * receives(plan, c) + [f"retained_{c}"] * has_ceiling(plan, c)
         names += [f"mass_low_{c}", f"mass_high_{c}", f"gyration_{c}"]
         names += [f"capture_share_{c}"] * (plan.components[c].capture == "share")
     return names + [f"weight_{way}" for way in plan.expulsion]
 
 
 def receives(plan, c):
+    """Whether matter may reach component c."""
     other = plan.components[OTHER[c]]
     return other.overflows or bool(other.capture)
+
+
+def has_ceiling(plan, c):
+    """Whether what component c accepts has a ceiling."""
+    return bool(plan.components[c].ceiling) and receives(plan, c)
 
 
 def _has_excess(plan):

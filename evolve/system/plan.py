@@ -7,6 +7,7 @@ from functools import lru_cache
 from typing import NamedTuple
 
 from evolve.laws import find
+from evolve.laws.acceptance import accepted, burning_share, radiative_efficiency
 from evolve.laws.contract import NoKeys
 from evolve.stars import MODELS
 from evolve.system.layout import OTHER, Plan, PlanOfComponent, layout
@@ -95,6 +96,8 @@ def _ceiling(acceptance, component):
     ceiling = acceptance["ceiling"]
     if ceiling == "none":
         return None
+    if ceiling == "hydrogen-burning-band" and component["star"] != "white-dwarf":
+        return None
     name = "rate" if isinstance(ceiling, float) else ceiling
     law = find("ceiling", name)
     known = {**acceptance, **component, "rate": ceiling}
@@ -127,6 +130,10 @@ def plan_of(config, laws):
             functions[f"tides_{c}_eccentricity"] = laws.tides[c].law.second
         if laws.ceiling[c]:
             functions[f"ceiling_{c}_rate"] = laws.ceiling[c].law.function
+            functions["accepted_rate"] = accepted
+            if laws.ceiling[c].law.second:
+                functions[f"ceiling_{c}_edge"] = laws.ceiling[c].law.second
+                functions["burning_share"] = burning_share
     if laws.waves:
         functions["waves_torque"] = laws.waves.law.function
         if values["orbit"]["eccentricity"] > 0.0:
@@ -145,7 +152,6 @@ def plan_of(config, laws):
         eccentric=values["orbit"]["eccentricity"] > 0.0,
         waves=laws.waves is not None,
         overflow=laws.overflow.name,
-        ceiling=any(laws.ceiling.values()),
         expulsion=tuple(_identifier(way) for way in laws.expulsion),
         consequential=laws.consequential is not None,
         imports=_imports(functions),
@@ -190,7 +196,7 @@ def fields_read(function, argument):
 
 
 def _plan_of_component(model, laws, c, functions):
-    capture = laws.capture[c]
+    capture, ceiling = laws.capture[c], laws.ceiling[c]
     acting = laws.braking[c] or laws.wind[c] or laws.tides[c] or model.relaxing or model.phase
     # laws in which c is the companion, and the waves, in which it is either
     seen = [(f, 1) for name, f in functions.items() if not name.startswith("structure")]
@@ -200,12 +206,13 @@ def _plan_of_component(model, laws, c, functions):
     bare = not acting and all(fields is not None and fields <= {"mass"} for fields in reads)
     return PlanOfComponent(
         relaxing=model.relaxing,
-        phase=bool(model.phase),
+        phase=model.phase,
         overflows=model.overflows,
         braking=laws.braking[c] is not None,
         wind=laws.wind[c] is not None,
         capture="" if capture is None else "share" if isinstance(capture, float) else "law",
         tides=laws.tides[c] is not None,
+        ceiling="" if ceiling is None else "band" if ceiling.law.second else "plain",
         bare=bare,
     )
 
@@ -240,7 +247,7 @@ def parameters_of(config, laws, plan, star_keys):
         Of NamedTuples of floats; the first holds the plan's settings.
     """
     values = config.values
-    settings = {"share": values["acceptance"]["share"], "momentum_low": 1e-12, "momentum_high": 1e12}
+    settings = {"momentum_low": 1e-12, "momentum_high": 1e12}
     parts = {"star_keys_A": star_keys["A"], "star_keys_B": star_keys["B"]}
     parts["waves_keys"] = laws.waves and laws.waves.keys
     parts["overflow_keys"] = laws.overflow.keys
@@ -249,6 +256,12 @@ def parameters_of(config, laws, plan, star_keys):
     for c in "AB":
         model = MODELS[values[c]["star"]]
         gyration = values[c].get("gyration")
+        # the energy that a black hole sets free is lost to its mass
+        spin = values[c].get("spin") or 0.0
+        black_hole = values[c].get("kind") == "black-hole"
+        retained = 1.0 - radiative_efficiency(spin) if black_hole else 1.0
+        settings[f"retained_{c}"] = retained
+        settings[f"share_{c}"] = retained * values["acceptance"]["share"]
         settings[f"mass_low_{c}"] = 0.5 * max(model.mass_range[0], 1e-6 * values[c]["mass"])
         settings[f"mass_high_{c}"] = 2.0 * total
         settings[f"gyration_{c}"] = model.gyration if gyration is None else gyration
