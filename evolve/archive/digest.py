@@ -1,10 +1,39 @@
-"""A digest of everything in a file: a flipped byte in an attribute has no checksum of its own."""
+"""What tells a damaged archive from a sound one: a digest inside it, and a seal behind it.
+
+The digest covers the contents, so it holds for a file that a tool has packed anew; the seal
+covers the bytes, and is judged before HDF5 sees them: on a flipped byte in its own
+structures the HDF5 library can end the whole process.
+"""
 
 import hashlib
 
 import numpy as np
 
+SEAL = b"\nevolve-archive sha256 "
+"""Followed by 64 hexadecimal digits and a newline, after the end of what HDF5 reads."""
+SEAL_LENGTH = len(SEAL) + 65
+
 SKIPPED = {"digest", "DIMENSION_LIST", "REFERENCE_LIST"}
+
+
+def seal_of(content):
+    """The seal that stands behind the bytes of an archive.
+
+    Parameters
+    ----------
+    content : bytes
+
+    Returns
+    -------
+    bytes (SEAL_LENGTH,)
+    """
+    return SEAL + hashlib.sha256(content).hexdigest().encode() + b"\n"
+
+
+def seal_is_broken(content):
+    """True if a file has a seal that does not fit it; False also where it has none."""
+    content, seal = content[:-SEAL_LENGTH], content[-SEAL_LENGTH:]
+    return seal.startswith(SEAL) and seal != seal_of(content)
 
 
 def digest_of(file):

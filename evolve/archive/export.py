@@ -1,5 +1,7 @@
 """Tables of a history as text: CSV, or ECSV, which carries units and which astropy reads."""
 
+import json
+
 from evolve.config.units import conversion_factor
 from evolve.errors import ConfigError
 from evolve.history.columns import COLUMNS
@@ -32,7 +34,7 @@ def table_text(history, columns=None, units=None, every=None, rows=None, on="tim
     ------
     ConfigError
     """
-    columns = list(columns or history.columns)
+    columns = list(dict.fromkeys(columns or history.columns))
     for name in columns:
         if name not in history.columns:
             raise ConfigError(f'no column "{name}"; there are {", ".join(history.columns)}')
@@ -48,9 +50,16 @@ def table_text(history, columns=None, units=None, every=None, rows=None, on="tim
             raise ConfigError(f"--unit {name}={unit}: {error}") from error
         wanted[name] = unit
     head = _ecsv_head(columns, wanted) if form == "ecsv" else _csv_head(columns, wanted)
-    data = [(table[name] * factors[name]).tolist() for name in columns]
-    lines = [",".join(repr(value) for value in row) for row in zip(*data, strict=True)]
+    data = [_cells(name, table[name] * factors[name]) for name in columns]
+    lines = [",".join(row) for row in zip(*data, strict=True)]
     return "\n".join([*head, *lines]) + "\n"
+
+
+def _cells(name, values):
+    """The shortest texts that read back exactly; flags as integers."""
+    if COLUMNS[name].flags:
+        values = values.astype(int)
+    return [repr(value) for value in values.tolist()]
 
 
 def _csv_head(columns, units):
@@ -60,8 +69,8 @@ def _csv_head(columns, units):
 def _ecsv_head(columns, units):
     head = ["%ECSV 1.0", "---", "delimiter: ','", "datatype:"]
     for name in columns:
-        unit = f", unit: {units[name]}" if units[name] else ""
-        head.append(
-            f"- {{name: {name}{unit}, datatype: float64, description: '{COLUMNS[name].long_name}'}}"
-        )
+        unit = f", unit: {json.dumps(units[name])}" if units[name] else ""
+        kind = "int8" if COLUMNS[name].flags else "float64"
+        told = json.dumps(COLUMNS[name].long_name)
+        head.append(f"- {{name: {name}{unit}, datatype: {kind}, description: {told}}}")
     return [f"# {line}" for line in head] + [",".join(columns)]

@@ -1,14 +1,18 @@
 """Reading an archive back, and saying what is wrong with one that is damaged."""
 
+import io
 import json
 from pathlib import Path
 
 import numpy as np
 
-from evolve.archive.digest import digest_of
+from evolve.archive.digest import digest_of, seal_is_broken
+from evolve.archive.paths import SIGNATURE
 from evolve.archive.write import FORMAT, LAYOUT
 from evolve.errors import ArchiveError, ConfigError
 from evolve.history import Chapter, Event, History, Ledger
+
+CURE = "make it again with `evolve run`"
 
 
 def open_history(path):
@@ -32,19 +36,30 @@ def open_history(path):
     """
     import h5py
 
-    path = Path(path)
-    if path.is_dir() or not path.exists():
-        what = "is a directory" if path.is_dir() else "no such file"
-        raise ConfigError(f"{path}: {what}; give the archive that `evolve run` wrote")
+    content = _content(Path(path))
     try:
-        with h5py.File(path, "r") as file:
+        with h5py.File(io.BytesIO(content), "r") as file:
             _judge(path, file)
             return _history(file)
-    except (OSError, KeyError, RuntimeError, ValueError, UnicodeDecodeError) as error:
+    except (OSError, LookupError, RuntimeError, ValueError, TypeError, AttributeError) as error:
         reason = str(error).splitlines()[0] if str(error) else type(error).__name__
-        raise ArchiveError(
-            f"{path}: is damaged or no archive ({reason}); make it again with `evolve run`"
-        ) from error
+        raise ArchiveError(f"{path}: is damaged ({reason}); {CURE}") from error
+
+
+def _content(path):
+    """The bytes of a file that may be an archive."""
+    try:
+        if path.is_dir() or not path.exists():
+            what = "is a directory" if path.is_dir() else "no such file"
+            raise ConfigError(f"{path}: {what}; give the archive that `evolve run` wrote")
+        content = path.read_bytes()
+    except OSError as error:
+        raise ArchiveError(f"{path}: cannot be read ({error.strerror or error})") from error
+    if not content.startswith(SIGNATURE):
+        raise ArchiveError(f"{path}: is no archive (it does not begin as HDF5 does)")
+    if seal_is_broken(content):
+        raise ArchiveError(f"{path}: is damaged (its checksum does not fit its bytes); {CURE}")
+    return content
 
 
 def _judge(path, file):
@@ -58,8 +73,7 @@ def _judge(path, file):
         )
     if file.attrs["digest"] != digest_of(file):
         raise ArchiveError(
-            f"{path}: is damaged (its digest does not fit its contents); make it again with "
-            "`evolve run`"
+            f"{path}: is damaged or was changed (its digest does not fit its contents); {CURE}"
         )
 
 
@@ -107,8 +121,8 @@ def _events(group):
     return [
         Event(name, component, float(time), int(row), float(residual))
         for name, component, time, row, residual in zip(
-            _texts(group["name"]), _texts(group["component"]), group["time"], group["row"],
-            group["residual"], strict=True,
+            _texts(group["name"]), _texts(group["component"]), group["time"][()], group["row"][()],
+            group["residual"][()], strict=True,
         )  # fmt: skip
     ]
 
@@ -117,8 +131,8 @@ def _chapters(group):
     return [
         Chapter(regime, float(start), float(end), int(first), int(last), ended_by)
         for regime, start, end, first, last, ended_by in zip(
-            _texts(group["regime"]), group["start"], group["end"], group["first_row"],
-            group["last_row"], _texts(group["ended_by"]), strict=True,
+            _texts(group["regime"]), group["start"][()], group["end"][()], group["first_row"][()],
+            group["last_row"][()], _texts(group["ended_by"]), strict=True,
         )  # fmt: skip
     ]
 

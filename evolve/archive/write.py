@@ -1,12 +1,13 @@
 """Writing a history to HDF5: self-describing, checksummed, whole or not at all."""
 
+import io
 import json
 
 import numpy as np
 
-from evolve.archive.digest import digest_of
+from evolve.archive.digest import digest_of, seal_of
 from evolve.archive.paths import check_output, whole_file
-from evolve.history.columns import COLUMNS
+from evolve.history.columns import COLUMNS, attributes_of
 from evolve.history.ledger import MASS_UNIT, MOMENTUM_UNIT
 
 FORMAT = "evolve-archive"
@@ -32,18 +33,36 @@ def write_archive(history, path, replace=False):
     ArchiveError
         If the machine fails; then nothing is left at the path, or what was there before.
     """
+    path = check_output(path, replace)
+    image = archive_bytes(history)
+    with whole_file(path) as part:
+        part.write_bytes(image)
+
+
+def archive_bytes(history):
+    """The archive of a history, made in memory: HDF5 does not survive a full disk, we do.
+
+    Parameters
+    ----------
+    history : evolve.history.History
+
+    Returns
+    -------
+    bytes
+        Equal for equal histories.
+    """
     import h5py
 
-    path = check_output(path, replace)
-    with whole_file(path) as part:
-        with h5py.File(part, "w", track_order=True) as file:
-            _root(file, history)
-            _trajectory(file, history)
-            _table(file, "events", "event", _event_columns(history))
-            _table(file, "chapters", "chapter", _chapter_columns(history))
-            _ledger(file, history)
-            file.attrs["complete"] = np.int8(history.complete)
-            file.attrs["digest"] = digest_of(file)
+    image = io.BytesIO()
+    with h5py.File(image, "w", track_order=True) as file:
+        _root(file, history)
+        _trajectory(file, history)
+        _table(file, "events", "event", _event_columns(history))
+        _table(file, "chapters", "chapter", _chapter_columns(history))
+        _ledger(file, history)
+        file.attrs["complete"] = np.int8(history.complete)
+        file.attrs["digest"] = digest_of(file)
+    return image.getvalue() + seal_of(image.getvalue())
 
 
 def _root(file, history):
@@ -68,8 +87,10 @@ def _root(file, history):
 
 
 def _text(file, name, text):
+    """A text of the root; what UTF-8 or HDF5 cannot hold becomes U+FFFD or "?"."""
     import h5py
 
+    text = text.replace("\0", "\ufffd").encode("utf-8", "replace").decode()
     if len(text.encode()) <= LONGEST_ATTRIBUTE:
         file.attrs[name] = text
     else:
@@ -95,13 +116,8 @@ def _trajectory(file, history):
     group = file.create_group("trajectory", track_order=True)
     time = None
     for name, values in history.columns.items():
-        column = COLUMNS[name]
-        attributes = {"units": column.unit, "long_name": column.long_name}
-        if column.flags:
-            values = values.astype(np.int8)
-            attributes["flag_values"] = np.array(list(column.flags), dtype=np.int8)
-            attributes["flag_meanings"] = " ".join(column.flags.values())
-        dataset = _dataset(group, name, values, **attributes)
+        values = values.astype(np.int8) if COLUMNS[name].flags else values
+        dataset = _dataset(group, name, values, **attributes_of(name))
         if time is None:
             time = dataset
             time.make_scale("time")

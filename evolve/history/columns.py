@@ -2,6 +2,8 @@
 
 from typing import NamedTuple
 
+import numpy as np
+
 
 class Column(NamedTuple):
     """Unit as astropy spells it, a name for people, and the meanings of a flag's values."""
@@ -65,3 +67,23 @@ COLUMNS = {
     **_of_both("mass_function", "solMass", "mass function measured from {}"),
     "donor_density": Column("g / cm3", "mean density of the donor"),
 }
+
+
+def attributes_of(name):
+    """What tells a reader of a file about a column.
+
+    Parameters
+    ----------
+    name : str
+
+    Returns
+    -------
+    dict
+        units, long_name; of a flag also flag_values (ndarray of int8) and flag_meanings.
+    """
+    column = COLUMNS[name]
+    told = {"units": column.unit, "long_name": column.long_name}
+    if column.flags:
+        told["flag_values"] = np.array(list(column.flags), dtype=np.int8)
+        told["flag_meanings"] = " ".join(column.flags.values())
+    return told

@@ -5,7 +5,7 @@ from typing import NamedTuple
 import numpy as np
 
 from evolve.errors import ConfigError, MissingExtra
-from evolve.history.columns import COLUMNS
+from evolve.history.columns import COLUMNS, attributes_of
 from evolve.history.epoch import row_of_event, state_at
 
 
@@ -49,7 +49,7 @@ class History:
     title, note, config_text : str
     config_files : dict of str
         Texts of the files that the config names.
-    statistics : dict
+    statistics : dict of float, int or str
         Method, tolerances, steps, evaluations.
     sources : sequence of str
         Keys of the bibliography.
@@ -143,8 +143,7 @@ class History:
         except ImportError as error:
             raise MissingExtra("xarray", "all") from error
         data = {
-            name: ("time", values, {"units": COLUMNS[name].unit, "long_name": COLUMNS[name].long_name})
-            for name, values in self.columns.items()
+            name: ("time", values, attributes_of(name)) for name, values in self.columns.items()
         }
         return xarray.Dataset({n: d for n, d in data.items() if n != "time"}, {"time": data["time"]})
 
@@ -171,7 +170,8 @@ def largest_differences(one, other):
     -------
     dict of float
         Relative to the largest absolute value of the column in `one`; inf for a column that
-        one of them lacks or where the numbers of rows differ.
+        one of them lacks, where the numbers of rows differ, or where a value of only one
+        is finite.
     """
     found = {}
     for name in dict.fromkeys([*one.columns, *other.columns]):
@@ -179,7 +179,9 @@ def largest_differences(one, other):
         if a is None or b is None or len(a) != len(b):
             found[name] = float("inf")
             continue
-        gap = np.where(np.isnan(a) & np.isnan(b), 0.0, np.abs(a - b))
-        scale = np.nanmax(np.abs(a)) if np.isfinite(a).any() else 1.0
-        found[name] = float(np.max(np.where(np.isnan(gap), np.inf, gap)) / (scale or 1.0))
+        other_bits = ~((a == b) | (np.isnan(a) & np.isnan(b)))
+        a, b, size = a[other_bits], b[other_bits], np.abs(a[np.isfinite(a)])
+        gap = np.abs(np.subtract(a, b, where=np.isfinite(a) & np.isfinite(b), out=np.full(len(a), np.inf)))
+        scale = size.max() if size.any() else 1.0
+        found[name] = float(gap.max(initial=0.0) / scale)
     return found

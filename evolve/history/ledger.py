@@ -44,11 +44,12 @@ class Ledger:
         KeyError
             Naming the entries there are.
         """
-        for books in [getattr(self, kind)] if kind else [self.angular_momentum, self.mass]:
+        kinds = (kind,) if kind else ("angular_momentum", "mass")
+        for books in (getattr(self, kind) for kind in kinds):
             parts = [n for n in books if n == entry or n.rpartition("_")[0] == entry]
             if parts:
                 return float(sum(np.sum(books[name]) for name in parts))
-        known = dict.fromkeys([*self.angular_momentum, *self.mass])
+        known = dict.fromkeys(name for kind in kinds for name in getattr(self, kind))
         raise KeyError(f'the ledger has no "{entry}"; it has {", ".join(known)}')
 
     def share(self, entry):
