@@ -134,7 +134,7 @@ def core_radius_rappaport(core_mass):
     return radius, variable / radius * (4.5 - 16.0 * fourth / whole)
 
 
-def structure(mass, radius, phase, keys):
+def nuclear_structure(mass, radius, phase, keys):
     """A giant whose radius its core alone decides.
 
     Parameters
@@ -154,10 +154,8 @@ def structure(mass, radius, phase, keys):
 
     Notes
     -----
-    Overflow on the nuclear time: the envelope follows its core without delay and does not
-    answer the loss of mass. That holds while zeta_lobe < 0 only. Beyond, transfer goes on the
-    thermal time (`thermal_structure`) or, if the adiabatic exponent does not exceed zeta_lobe,
-    on the dynamical time. Cores are degenerate in stars up to about 2.3 solMass; solar
+    The envelope follows its core without delay and does not answer the loss of mass: the limit
+    of `structure` for transfer slower than the thermal time of the envelope. Cores are degenerate in stars up to about 2.3 solMass; solar
     composition.
 
     References
@@ -184,8 +182,8 @@ def structure(mass, radius, phase, keys):
     )  # fmt: skip
 
 
-def thermal_structure(mass, radius, phase, keys):
-    """The same giant with a radius of its own, for overflow on the thermal time.
+def structure(mass, radius, phase, keys):
+    """A giant that relaxes to the radius that its core demands.
 
     Parameters
     ----------
@@ -202,12 +200,18 @@ def thermal_structure(mass, radius, phase, keys):
         `equilibrium` R(core mass), `zeta` the key zeta_ad or that of a condensed polytrope,
         `thermal` ln(R_eq/R) R L/(G m m_envelope) plus the growth with the core.
 
+    Notes
+    -----
+    The thermal time of the envelope is so short that overflow on the nuclear time sees R(core
+    mass), whatever the mass; where that is not stable the transfer goes on the thermal time
+    by itself, and is dynamical where zeta does not exceed zeta_lobe.
+
     References
     ----------
     As `structure`; Soberman, Phinney & van den Heuvel 1997, A&A 327, 620 (zeta); D'Antona,
     Mazzitelli & Ritter 1989, A&A 225, 391 (three terms of the radius).
     """
-    nuclear = structure(mass, radius, phase, keys)
+    nuclear = nuclear_structure(mass, radius, phase, keys)
     zeta = keys.zeta_ad
     if isnan(zeta):
         zeta = condensed_polytrope(nuclear.core_mass / mass)
@@ -267,7 +271,7 @@ MODEL = StarModel(
             ("webbink-1983", "rappaport-1995"), "webbink-1983", "radius by core mass"
         )
     },
-    relaxing=False,
+    relaxing=True,
     phase="core",
     start_phase=start_phase,
     overflows=True,

@@ -13,7 +13,7 @@ from evolve.laws import bibliography
 from evolve.laws.contract import described_keys
 from evolve.stars import MODELS
 from evolve.stars.contract import StarModel, Structure
-from evolve.stars.giant import thermal_structure
+from evolve.stars.giant import nuclear_structure
 
 KINDS = {"gas", "white-dwarf", "helium", "neutron-star", "black-hole", "point-mass", ""}
 
@@ -130,11 +130,11 @@ def test_compiles_and_agrees(sample):
         assert found == pytest.approx(tuple(expected), rel=1e-13, abs=1e-300, nan_ok=True)
 
 
-def test_the_giant_on_the_thermal_time_compiles_and_agrees():
+def test_the_giant_in_equilibrium_compiles_and_agrees():
     sample = SAMPLES["giant"]
-    fast = compiled(thermal_structure)
+    fast = compiled(nuclear_structure)
     for point in states(sample, 3):
-        expected = thermal_structure(*point, sample.keys)
+        expected = nuclear_structure(*point, sample.keys)
         assert fast(*point, sample.keys) == pytest.approx(tuple(expected), rel=1e-13)
 
 

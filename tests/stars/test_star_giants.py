@@ -9,7 +9,7 @@ from evolve.errors import DomainError
 from evolve.orbit.kepler import period
 from evolve.orbit.lobes import lobe_fraction
 from evolve.stars import MODELS
-from evolve.stars.giant import condensed_polytrope, thermal_structure
+from evolve.stars.giant import condensed_polytrope, nuclear_structure, structure
 
 MODEL = MODELS["giant"]
 RELATIONS = ("webbink-1983", "rappaport-1995")
@@ -17,7 +17,7 @@ RELATIONS = ("webbink-1983", "rappaport-1995")
 
 def giant(core, mass=1.0, relation="webbink-1983", **values):
     keys = MODEL.prepare(mass, {"core_mass": core, "relation": relation, **values})
-    return MODEL.structure(mass, 0.0, core, keys), keys
+    return nuclear_structure(mass, 0.0, core, keys), keys
 
 
 # Webbink, Rappaport & Savonije 1983 (ApJ 270, 678), table 2, Population I, from memory; evaluated
@@ -96,24 +96,24 @@ def test_time_to_grow_a_core(relation):
 
 def test_on_the_thermal_time_the_radius_is_its_own():
     nuclear, keys = giant(0.3, 1.2)
-    at_rest = thermal_structure(1.2, nuclear.radius, 0.3, keys)
+    at_rest = structure(1.2, nuclear.radius, 0.3, keys)
     assert at_rest.thermal == pytest.approx(nuclear.thermal, rel=1e-12)
     assert at_rest.zeta == condensed_polytrope(0.25)
-    wider = thermal_structure(1.2, 1.1 * nuclear.radius, 0.3, keys)
+    wider = structure(1.2, 1.1 * nuclear.radius, 0.3, keys)
     # G m m_envelope/(R L) in SI
     seconds = 6.6743e-11 * 1.2 * 0.9 * 1.98841e30**2
     seconds /= 1.1 * nuclear.radius * 6.957e8 * nuclear.luminosity * 3.828e26
     expected = -log(1.1) / (seconds / 31557600.0) + nuclear.thermal
     assert wider.thermal == pytest.approx(expected, rel=1e-4)
     assert wider.equilibrium == nuclear.radius and wider.radius == 1.1 * nuclear.radius
-    assert thermal_structure(1.2, 30.0, 0.3, giant(0.3, 1.2, zeta_ad=0.9)[1]).zeta == 0.9
+    assert structure(1.2, 30.0, 0.3, giant(0.3, 1.2, zeta_ad=0.9)[1]).zeta == 0.9
 
 
 def test_relaxation_is_bounded_without_an_envelope():
     _, keys = giant(0.3)
-    thin = thermal_structure(0.3 + 1e-9, 20.0, 0.3, keys)
+    thin = structure(0.3 + 1e-9, 20.0, 0.3, keys)
     assert thin.thermal == pytest.approx(
-        thermal_structure(0.31, 20.0, 0.3, keys).thermal, rel=0.05
+        structure(0.31, 20.0, 0.3, keys).thermal, rel=0.05
     )
 
 
