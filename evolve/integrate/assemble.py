@@ -3,7 +3,7 @@
 import numpy as np
 
 from evolve.constants import ENERGY_PER_LUMINOSITY_YEAR, G, GRAVITATIONAL_TIME, HOURS_PER_YEAR
-from evolve.history import Chapter, Event, History, Ledger
+from evolve.history import COLUMNS, Chapter, Event, History, Ledger
 from evolve.integrate.outcomes import GOOD
 from evolve.system.layout import OTHER
 
@@ -23,11 +23,8 @@ def history_of(run):
     -------
     evolve.history.History
     """
-    rows = run.recorder.rows
-    table = np.array([row.quantities for row in rows], dtype=float)
-    q = dict(zip(run.pair.layout.quantities, table.T, strict=True))
-    columns = columns_of(run.pair, np.array([row.time for row in rows]), q, _donor(run, len(rows)))
-    config = run.pair.config
+    columns = _columns(run)
+    config = run.acts[0].pair.config
     return History(
         columns=columns,
         events=_events(run),
@@ -41,9 +38,35 @@ def history_of(run):
         config_text=config.text,
         config_files=config.files,
         statistics=_statistics(run),
-        sources=sources_of(run.pair),
+        sources=tuple(dict.fromkeys(key for act in run.acts for key in sources_of(act.pair))),
         warnings=list(config.warnings),
     )
+
+
+def _columns(run):
+    """The columns of all acts, one after the other; what an act lacks is 0 or NaN."""
+    rows = run.recorder.rows
+    time, donor = np.array([row.time for row in rows]), _donor(run, len(rows))
+    bounds = [act.row for act in run.acts] + [len(rows)]
+    parts = []
+    for act, first, last in zip(run.acts, bounds, bounds[1:], strict=False):
+        if first == last:
+            continue
+        table = np.array([row.quantities for row in rows[first:last]], dtype=float)
+        q = dict(zip(act.pair.layout.quantities, table.T, strict=True))
+        parts.append(columns_of(act.pair, time[first:last], q, donor[first:last]))
+    names = dict.fromkeys(name for name in COLUMNS if any(name in part for part in parts))
+    return {
+        name: np.concatenate([
+            part[name] if name in part else np.full(len(part["time"]), _absent(name))
+            for part in parts
+        ])
+        for name in names
+    }  # fmt: skip
+
+
+def _absent(name):
+    return 0.0 if name.startswith((*FLOW_COLUMNS, "torque", "eccentricity")) else np.nan
 
 
 def _donor(run, length):
@@ -175,27 +198,41 @@ def _chapters(run):
 
 
 def _ledger(run):
-    """Differences of the ledger's integrals from chapter to chapter."""
-    rows, names = run.recorder.rows, run.pair.layout.ledger
-    first = len(run.pair.layout.core)
-    bounds = [opening.row for opening in run.openings] + [len(rows) - 1]
-    integrals = np.array([rows[row].state[first:] for row in bounds]).reshape(len(bounds), -1)
-    shares = dict(zip(names, np.diff(integrals, axis=0).T, strict=True))
-    flows = ("overflow", "wind", "captured", "accepted", "expelled")
+    """Differences of the ledger's integrals over each chapter, and jumps between chapters."""
+    rows, chapters = run.recorder.rows, _chapters(run)
     momentum, mass = {}, {}
-    for name, values in shares.items():
-        if name.startswith(flows):
-            mass[name] = values
-        else:
-            momentum[name.removeprefix("torque_")] = values
-    ends = [dict(zip(run.pair.layout.core, row.state, strict=False)) for row in (rows[0], rows[-1])]
-    names = ("mass_A", "mass_B", "angular_momentum")
+
+    def book(entries, name, number, value):
+        entries.setdefault(name, np.zeros(len(chapters)))[number] += value
+
+    for number, chapter in enumerate(chapters):
+        pair = _pair_of(run, chapter.first_row)
+        slots, first = pair.layout.ledger, len(pair.layout.core)
+        change = rows[chapter.last_row].state - rows[chapter.first_row].state
+        for name, value in zip(slots, change[first:], strict=True):
+            if name.startswith(FLOW_COLUMNS):
+                book(mass, name, number, value)
+            else:
+                book(momentum, name.removeprefix("torque_"), number, value)
+        if number and pair is not _pair_of(run, chapters[number - 1].first_row):
+            before, after = (_balance_at(run, row) for row in (chapter.first_row - 1, chapter.first_row))
+            book(momentum, "jump", number, after["angular_momentum"] - before["angular_momentum"])
+            for c in "AB":
+                book(mass, f"jump_{c}", number, after[f"mass_{c}"] - before[f"mass_{c}"])
     return Ledger(
-        angular_momentum=momentum,
-        mass=mass,
-        start={name: ends[0][name] for name in names},
-        end={name: ends[1][name] for name in names},
-    )
+        angular_momentum=momentum, mass=mass, start=_balance_at(run, 0),
+        end=_balance_at(run, len(rows) - 1),
+    )  # fmt: skip
+
+
+def _pair_of(run, row):
+    return [act.pair for act in run.acts if act.row <= row][-1]
+
+
+def _balance_at(run, row):
+    """Masses and angular momentum in a row."""
+    core = zip(_pair_of(run, row).layout.core, run.recorder.rows[row].state, strict=False)
+    return {k: v for k, v in core if k in ("mass_A", "mass_B", "angular_momentum")}
 
 
 def _statistics(run):

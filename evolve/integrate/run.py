@@ -3,14 +3,18 @@
 from math import log
 from typing import NamedTuple
 
+from dataclasses import replace
+
 import numpy as np
 
+from evolve.integrate.changes import collapse, common_envelope, remnant
 from evolve.integrate.course import Course
 from evolve.integrate.outcomes import sentence
 from evolve.integrate.recorder import Recorder
 from evolve.integrate.stretch import InspiralStretch, TimeStretch
 from evolve.integrate.watches import CONTACT_MARGIN, WAKE, watches_for
 from evolve.system.layout import OTHER
+from evolve.system.pair import Pair
 
 CHATTER = 25
 """So many events in a row without time passing between them are a fault, not a history."""
@@ -31,6 +35,13 @@ class Opening(NamedTuple):
     row: int
     regime: str
     event: str
+
+
+class Act(NamedTuple):
+    """From this row on the pair is this one: a star has become something else."""
+
+    row: int
+    pair: object
 
 
 class Run:
@@ -59,6 +70,7 @@ class Run:
         self.steps = self.evaluations = self.jacobians = self.stretches = 0
         self.idle = 0
         self.opening_event = ""
+        self.ignored = set()
 
     # What watches and chapters ask -----------------------------------------------------
 
@@ -94,6 +106,7 @@ class Run:
 
     def run(self):
         """Integrate to the end. Sets `outcome` and `message`; rows, marks and openings stay."""
+        self.acts = [Act(0, self.pair)]
         self._open("start")
         self._mark("start")
         self._wake()
@@ -172,9 +185,11 @@ class Run:
         if watch.name == "runaway":
             if not self._already("unstable_overflow", c):
                 self._mark("unstable_overflow", c, row)
-            return self._finish(watch.end)
+            return self._unstable(c)
         if watch.name != "end":
             self._mark(watch.name, c, row, residual)
+        if watch.end == "unstable_overflow":
+            return self._unstable(c)
         if watch.end:
             return self._finish(watch.end)
         if act := getattr(self, f"_on_{watch.name}", None):
@@ -222,6 +237,60 @@ class Run:
     def _on_braking_resumes(self, c):
         self._switch(f"braking_{c}", True)
 
+    # A star becomes something else ------------------------------------------------------------
+
+    def _on_envelope_exhausted(self, c):
+        self._mark("remnant_formed", c, len(self.recorder) - 1)
+        self._become(c, remnant(self.pair.config.values[c], c, self.now()))
+
+    def _on_collapse(self, c):
+        after = collapse(self.pair.config.values[c], c, self.now())
+        if after is None:
+            self._mark("unbound", "", len(self.recorder) - 1)
+            return self._finish("unbound")
+        return self._become(c, after)
+
+    def _unstable(self, c):
+        """Unstable overflow: the history stops, goes on, or goes through a common envelope."""
+        envelope = self.pair.config.values["envelope"]
+        if envelope["follows"] == "stop":
+            return self._finish("unstable_overflow")
+        if envelope["follows"] == "continue":
+            self.ignored.add(c)
+            return None
+        self._mark("common_envelope", c, len(self.recorder) - 1)
+        quantities = self.now()
+        after = common_envelope(
+            self.pair.config.values[c], c, quantities, envelope["efficiency"],
+            envelope["binding"], getattr(quantities, f"radius_{OTHER[c]}"),
+        )  # fmt: skip
+        if after is None:
+            self._mark("merger", "", len(self.recorder) - 1)
+            return self._finish("merger")
+        self._become(c, after)
+        self.opening_event = self.opening_event or "common_envelope"
+        return None
+
+    def _become(self, c, after):
+        """Go on with the pair in which component c is what it has become."""
+        other, old = OTHER[c], dict(zip(self.pair.layout.core, self.state, strict=False))
+        values = dict(self.pair.config.values)
+        values[c] = after.values
+        values[other] = {**values[other], "mass": old[f"mass_{other}"]}
+        values["orbit"] = {
+            "separation": after.separation, "eccentricity": after.eccentricity,
+            "period": None, "fill": None,
+        }  # fmt: skip
+        config = replace(self.pair.config, values=values)
+        self.pair = Pair(config, {other: self.pair.star_keys[other]}, old)
+        self.acts.append(Act(len(self.recorder), self.pair))
+        self.switches = self.pair.first_switches()
+        self.in_contact = {"A": False, "B": False}
+        self.inspiral = self._inspirals()
+        self.state = np.array(self.pair.start + [0.0] * len(self.pair.layout.ledger))
+        self.ignored = set()
+        self._wake()
+
     # Small things -------------------------------------------------------------------------
 
     def _wake(self):
@@ -263,7 +332,7 @@ class Run:
         quantities = self.now()
         row = self.recorder.add(self.time, self.state, quantities)
         self.time = self.recorder.rows[row].time
-        if self.openings and self.openings[-1].row < row - 1:
+        if self.openings and self.openings[-1].row < row - 1 and self.acts[-1].row < row:
             gauge = self.pair.layout.gauges.index("period_rate")
             before = self.pair.gauges(self.recorder.rows[row - 1].quantities)[gauge]
             after = self.pair.gauges(quantities)[gauge]

@@ -7,9 +7,19 @@ integration goes on.
 from math import log
 from typing import NamedTuple
 
+from evolve.stars.giant import THINNEST
+
 CONTACT_MARGIN = 1e-9
 """Contact and detachment lie this far apart (in ln R, or ln of the rate): neither may start
 at its own zero, where the root of the other has just been found to a rounding error."""
+PHASE_ENDS = {
+    "burnt": ("burning_ends", "validity"),
+    "core": ("validity", "validity"),
+    "age": ("table_end", "table_end"),
+}
+"""Clock of a star's model -> the event at its end, and how the history ends there."""
+CEILING_MARGIN = 1e-3
+"""A ceiling counts as reached this far below it, and as left three times as far."""
 WAKE, SLEEP = -30.0, -32.0
 """(R - R_L)/H at which the atmosphere's flow joins and leaves the equations."""
 
@@ -52,6 +62,7 @@ def watches_for(run):
         if run.pair.models[c].overflows:
             found += _lobe_watches(run, c, watch)
         found += _braking_watches(run, c, watch)
+        found += _life_watches(run, c, watch)
         low, high = run.pair.models[c].mass_range
         found.append(watch("validity", c, f"mass_{c}", log(low), -1, end="validity"))
         found.append(watch("validity", c, f"mass_{c}", log(high), +1, end="validity"))
@@ -73,7 +84,7 @@ def _lobe_watches(run, c, watch):
         if law == "atmosphere":
             found.append(watch("sleep", c, f"excess_{c}", SLEEP, -1))
         return found
-    if law == "locked":
+    if law == "locked":  # nothing can be imposed on an unstable donor: it always ends
         end = "unstable_overflow"
         return [
             watch("detachment", c, f"drive_{c}", 0.0, -1),
@@ -82,11 +93,13 @@ def _lobe_watches(run, c, watch):
     gone = watch("detachment", c, f"rate_{c}", threshold - CONTACT_MARGIN, -1)
     if law == "polytrope":
         gone = watch("detachment", c, f"fill_{c}", 0.0, -1)
-    return [
+    found = [
         gone,
         watch("unstable_overflow", c, f"stability_{c}", 0.0, -1, terminal=False, at_once=False),
-        watch("runaway", c, f"runaway_{c}", 0.0, +1, end="unstable_overflow"),
     ]
+    if c not in run.ignored:
+        found.append(watch("runaway", c, f"runaway_{c}", 0.0, +1, end="unstable_overflow"))
+    return found
 
 
 def _braking_watches(run, c, watch):
@@ -97,6 +110,24 @@ def _braking_watches(run, c, watch):
         return [watch("braking_stops", c, f"mass_{c}", level, -1)]
     # A margin: the chapter after the stop starts with the mass exactly at the limit.
     return [watch("braking_resumes", c, f"mass_{c}", level + 1e-9, +1)]
+
+
+def _life_watches(run, c, watch):
+    """Where a star's own clock ends, and where it becomes something else."""
+    found, model = [], run.pair.models[c]
+    keys, limits = run.pair.star_keys[c], run.pair.config.values["limits"]
+    if model.phase and hasattr(keys, "phase_high"):
+        name, end = PHASE_ENDS[model.phase]
+        found.append(watch(name, c, f"phase_{c}", keys.phase_high, +1, end=end))
+    if model.phase == "core":
+        found.append(watch("envelope_exhausted", c, f"envelope_{c}", THINNEST, -1))
+    kind = run.pair.config.values[c].get("kind")
+    limit = {"neutron-star": "neutron_star"}.get(kind)
+    if model.kind == "white-dwarf":
+        limit = "white_dwarf"
+    if limit:
+        found.append(watch("collapse", c, f"mass_{c}", log(limits[limit]), +1))
+    return found
 
 
 def _end_watches(run, watch):
@@ -125,6 +156,11 @@ def _noted(run, watch):
         watch("period_minimum", "", "period_rate", 0.0, +1, terminal=False),
         watch("period_maximum", "", "period_rate", 0.0, -1, terminal=False),
     ]
+    for c in "AB":
+        if f"ceiling_{c}" in run.pair.layout.gauges:
+            for name, direction in (("ceiling_reached", +1), ("ceiling_left", -1)):
+                level = log(1.0 - CEILING_MARGIN * (2 - direction))
+                found.append(watch(name, c, f"ceiling_{c}", level, direction, terminal=False))
     if any(run.pair.models[c].overflows for c in "AB") or any(run.pair.laws.wind.values()):
         found.append(watch("masses_equal", "", "mass_ratio", 0.0, 0, terminal=False))
     if "darwin" in run.pair.layout.gauges:

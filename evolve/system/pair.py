@@ -40,6 +40,10 @@ class Pair:
     ----------
     config : evolve.config.Config
         Completed and checked.
+    star_keys : dict, optional
+        "A" or "B" -> Keys of a star that goes on from an earlier pair as it was.
+    state : dict, optional
+        Core slot -> value of that earlier pair.
 
     Attributes
     ----------
@@ -60,13 +64,13 @@ class Pair:
         If the pair starts overfilled, or the orbit is too small for its stars.
     """
 
-    def __init__(self, config):
+    def __init__(self, config, star_keys=None, state=None):
         values = config.values
         self.config = config
         self.models = {c: MODELS[values[c]["star"]] for c in "AB"}
         self.star_keys = {
             c: self.models[c].prepare(values[c]["mass"], values[c]) for c in "AB"
-        }
+        } | (star_keys or {})
         self.laws = choose_laws(config)
         self.plan, self.functions = plan_of(config, self.laws)
         self.layout = layout(self.plan)
@@ -85,6 +89,9 @@ class Pair:
             c: values["braking"][c]["stops_below"] if self.laws.braking[c] else 0.0 for c in "AB"
         }
         self.start = start_state(self)
+        for slot, name in enumerate(self.layout.core):
+            if state and name in state and name[-1] in (star_keys or {}):
+                self.start[slot] = float(state[name])
 
     def quantities(self, time, state, switches):
         """Everything that columns and events need at one state, by name.

@@ -1,0 +1,93 @@
+"""What a star becomes: remnants, collapses, a common envelope. Plain functions.
+
+Each gives the new config values of a pair, from which the next chapter's equations are
+built; the run carries the state over.
+"""
+
+from typing import NamedTuple
+
+from evolve.laws.envelope import survives, webbink_1984
+from evolve.laws.kick import collapsed_mass, sudden_change
+from evolve.system.layout import OTHER
+
+HELIUM_CORE = 0.5
+"""A bare core above this burns helium; below it is a white dwarf [solMass]."""
+
+
+class Becoming(NamedTuple):
+    """A star's new description and the orbit after it.
+
+    values      of the component, as a completed config has them
+    mass        [solMass]
+    separation  [solRad], eccentricity of the new orbit
+    """
+
+    values: dict
+    mass: float
+    separation: float
+    eccentricity: float
+
+
+def remnant(values, c, q):
+    """A giant that has lost its envelope becomes a white dwarf of its core's mass.
+
+    The last 0.01 solar masses leave as a fast wind: a M stays (Jeans mode), and the pair is
+    detached.
+    """
+    core = getattr(q, f"core_mass_{c}")
+    other = getattr(q, f"mass_{OTHER[c]}")
+    total = q.mass_A + q.mass_B
+    return Becoming(
+        _bare(values, "white-dwarf", core), core, q.separation * total / (core + other), 0.0
+    )
+
+
+def _bare(values, star, mass, **more):
+    common = {name: None for name in values if name in ("temperature", "luminosity", "radius")}
+    return {**common, "gyration": None, "spin": None, "star": star, "mass": mass, **more}
+
+
+def common_envelope(values, c, q, efficiency, binding, radius_other):
+    """The pair after a common envelope, or None if it merges (Webbink 1984, ApJ 277, 355).
+
+    The core is a white dwarf, or above 0.5 solar masses a helium star; a donor without a core
+    merges. The orbit is circular after, the accretor unchanged.
+    """
+    from evolve.stars import MODELS
+
+    core, mass = getattr(q, f"core_mass_{c}"), getattr(q, f"mass_{c}")
+    other = getattr(q, f"mass_{OTHER[c]}")
+    if core <= 0.0 or core >= mass:
+        return None
+    separation = webbink_1984(
+        mass, core, other, getattr(q, f"lobe_{c}"), q.separation, efficiency, binding
+    )
+    star = "helium-star" if core > HELIUM_CORE and values["star"] == "track" else "white-dwarf"
+    new = _bare(values, star, core, semi_degenerate=False)
+    model = MODELS[star]
+    radius = model.structure(core, 0.0, 0.0, model.prepare(core, new)).radius
+    if not survives(core, radius, other, radius_other, separation):
+        return None
+    return Becoming(new, core, separation, 0.0)
+
+
+def collapse(values, c, q):
+    """A white dwarf at its limit becomes a neutron star, a neutron star a black hole.
+
+    The white dwarf loses the binding energy of the neutron star at once (Lattimer & Yahil
+    1989); the orbit answers as to a sudden loss without a kick (Blaauw 1961). None if the pair
+    does not stay together.
+    """
+    mass = getattr(q, f"mass_{c}")
+    if values["star"] != "white-dwarf":
+        new = _bare(values, "compact", mass, kind="black-hole")
+        return Becoming(new, mass, q.separation, q.eccentricity)
+    left = collapsed_mass(mass)
+    after = sudden_change(mass, left, getattr(q, f"mass_{OTHER[c]}"), q.separation)
+    if not after.bound:
+        return None
+    new = _bare(values, "compact", left, kind="neutron-star")
+    return Becoming(new, left, after.separation, after.eccentricity)
+
+
+__all__ = ["Becoming", "collapse", "common_envelope", "remnant"]
