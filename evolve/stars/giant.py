@@ -155,8 +155,7 @@ def nuclear_structure(mass, radius, phase, keys):
     Notes
     -----
     The envelope follows its core without delay and does not answer the loss of mass: the limit
-    of `structure` for transfer slower than the thermal time of the envelope. Cores are degenerate in stars up to about 2.3 solMass; solar
-    composition.
+    of `structure` for transfer slower than the thermal time of the envelope.
 
     References
     ----------
@@ -204,11 +203,13 @@ def structure(mass, radius, phase, keys):
     -----
     The thermal time of the envelope is so short that overflow on the nuclear time sees R(core
     mass), whatever the mass; where that is not stable the transfer goes on the thermal time
-    by itself, and is dynamical where zeta does not exceed zeta_lobe.
+    by itself, and is dynamical where zeta does not exceed zeta_lobe. Cores are degenerate in
+    stars up to about 2.3 solMass; solar composition. An envelope below 0.01 solMass relaxes as
+    if it had that much.
 
     References
     ----------
-    As `structure`; Soberman, Phinney & van den Heuvel 1997, A&A 327, 620 (zeta); D'Antona,
+    As `nuclear_structure`; Soberman, Phinney & van den Heuvel 1997, A&A 327, 620 (zeta); D'Antona,
     Mazzitelli & Ritter 1989, A&A 225, 391 (three terms of the radius).
     """
     nuclear = nuclear_structure(mass, radius, phase, keys)
@@ -278,6 +279,9 @@ MODEL = StarModel(
     mass_range=(0.16, 2.3),
     gyration=0.1,
     kind="gas",
-    sources=("webbink-rappaport-savonije-1983", "rappaport-1995", "soberman-1997"),
+    sources=(
+        "webbink-rappaport-savonije-1983", "rappaport-1995", "soberman-1997",
+        "dantona-mazzitelli-ritter-1989",
+    ),
     validity="degenerate helium cores of 0.16..0.45 solMass, Population I, up to 2.3 solMass",
-)
+)  # fmt: skip

@@ -192,7 +192,8 @@ def prepare(mass, values):
     expected = track_mass(age, keys)
     if abs(mass / expected - 1.0) > MASS_TOLERANCE:
         raise DomainError(
-            f"the mass {mass:g} is not the track's: {expected:.4g} solMass at an age of {age:.6g} yr"
+            f"the mass {mass:g} is not the track's: {expected:.4g} solMass at an age of "
+            f"{age:.6g} yr"
         )
     return keys
 
