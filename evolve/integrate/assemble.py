@@ -2,14 +2,9 @@
 
 import numpy as np
 
-from evolve.constants import ENERGY_PER_LUMINOSITY_YEAR, G, GRAVITATIONAL_TIME, HOURS_PER_YEAR
 from evolve.history import COLUMNS, Chapter, Event, History, Ledger
+from evolve.integrate.derive import FLOW_COLUMNS, columns_of
 from evolve.integrate.outcomes import GOOD
-from evolve.system.layout import OTHER
-
-STAR_COLUMNS = ("radius", "lobe", "luminosity", "temperature")
-FLOW_COLUMNS = ("overflow", "wind", "captured", "accepted", "expelled")
-
 
 def history_of(run):
     """The History of a finished run.
@@ -75,103 +70,6 @@ def _donor(run, length):
     for opening in run.openings:
         donor[opening.row :] = code.get(opening.regime, 0.0)
     return donor
-
-
-def columns_of(pair, time, q, donor):
-    """The columns of a trajectory from the quantities of its rows.
-
-    Parameters
-    ----------
-    pair : evolve.system.pair.Pair
-    time, donor : ndarray (n,)
-        [yr]; 0 none, 1 A, 2 B.
-    q : dict of ndarray (n,)
-        The quantities by name.
-
-    Returns
-    -------
-    dict of ndarray (n,)
-        A column is there when its physics is on.
-    """
-    plan, parts = pair.plan, pair.plan.components
-    columns = {"time": time, "donor": donor}
-    for name in ("mass", *STAR_COLUMNS):
-        columns.update({f"{name}_{c}": q[f"{name}_{c}"] for c in "AB"})
-    for c in "AB":
-        columns[f"fill_{c}"] = q[f"radius_{c}"] / q[f"lobe_{c}"]
-        if q[f"core_mass_{c}"].any():
-            columns[f"core_mass_{c}"] = q[f"core_mass_{c}"]
-    columns["separation"] = q["separation"]
-    columns["period"] = 2.0 * np.pi / q["omega"] * HOURS_PER_YEAR
-    if plan.eccentric:
-        columns["eccentricity"] = q["eccentricity"]
-    columns["mass_ratio"] = _mass_ratio(q, donor)
-    columns["angular_momentum"] = q["angular_momentum"]
-    flows = [f"{name}_{c}" for name in FLOW_COLUMNS for c in "AB"]
-    columns.update({name: q[name] for name in flows if name in q})
-    columns.update(_torque_columns(q))
-    if any(parts[c].overflows for c in "AB"):
-        columns.update(_stability_columns(q, donor))
-    total = q["mass_A"] + q["mass_B"]
-    rate = 1.5 * q["separation_rate"] - 0.5 * (q["mass_rate_A"] + q["mass_rate_B"]) / total
-    columns["period_derivative"] = rate * columns["period"] / HOURS_PER_YEAR
-    return columns
-
-
-def _torque_columns(q):
-    slots = {"torque_waves": ("waves",), "torque_braking": ("braking_A", "braking_B")}
-    for name in ("torque_wind", "torque_expelled", "torque_consequential"):
-        slots[name] = (f"{name}_A", f"{name}_B")
-    columns = {}
-    for column, parts in slots.items():
-        there = [q[part] for part in parts if part in q]
-        if there:
-            columns[column] = sum(there)
-    return columns
-
-
-def _mass_ratio(q, donor):
-    """Donor over accretor; while detached, the component nearer to its lobe over the other."""
-    by_b = _b_leads(q, donor)
-    return np.where(by_b, q["mass_B"] / q["mass_A"], q["mass_A"] / q["mass_B"])
-
-
-def _b_leads(q, donor):
-    nearer = q["radius_B"] / q["lobe_B"] > q["radius_A"] / q["lobe_A"]
-    return (donor == 2) | ((donor == 0) & nearer)
-
-
-def _stability_columns(q, donor):
-    by_b = _b_leads(q, donor)
-
-    def of_donor(name):
-        missing = np.full(len(donor), np.nan)
-        return np.where(by_b, q.get(f"{name}_B", missing), q.get(f"{name}_A", missing))
-
-    mass, radius, luminosity = of_donor("mass"), of_donor("radius"), of_donor("luminosity")
-    with np.errstate(divide="ignore", invalid="ignore"):
-        return {
-            "zeta_star": of_donor("zeta"),
-            "zeta_lobe": of_donor("zeta_lobe"),
-            "thermal_time": np.where(
-                luminosity > 0.0, GRAVITATIONAL_TIME * mass**2 / (radius * luminosity), np.nan
-            ),
-            "transfer_time": np.where(of_donor("overflow") > 0.0, mass / of_donor("overflow"), np.nan),
-            "dynamical_time": np.sqrt(radius**3 / (G * mass)),
-            "accretion_luminosity": _accretion_luminosity(q),
-            "donor_density": mass / (4.0 / 3.0 * np.pi * radius**3),
-        }
-
-
-def _accretion_luminosity(q):
-    """G m mdot / R of what reaches an accretor with a surface [solLum]."""
-    power = np.zeros_like(q["mass_A"])
-    for c in "AB":
-        o = OTHER[c]
-        reaching = q.get(f"overflow_{o}", 0.0) + q.get(f"captured_{o}", 0.0)
-        surface = np.where(q[f"radius_{c}"] > 0.0, q[f"radius_{c}"], np.inf)
-        power += G * q[f"mass_{c}"] * reaching / surface
-    return power / ENERGY_PER_LUMINOSITY_YEAR
 
 
 def _events(run):

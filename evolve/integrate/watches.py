@@ -18,6 +18,12 @@ PHASE_ENDS = {
     "age": ("table_end", "table_end"),
 }
 """Clock of a star's model -> the event at its end, and how the history ends there."""
+THERMAL = (
+    ("thermal_overflow_begins", log(0.95), -1),
+    ("thermal_overflow_ends", log(0.97), +1),
+)
+"""Overflow counts as thermal while the donor is so much smaller than its equilibrium radius:
+its relaxation, not its evolution, then drives the transfer."""
 CEILING_MARGIN = 1e-3
 """A ceiling counts as reached this far below it, and as left three times as far."""
 WAKE, SLEEP = -30.0, -32.0
@@ -157,6 +163,9 @@ def _noted(run, watch):
         watch("period_maximum", "", "period_rate", 0.0, -1, terminal=False),
     ]
     for c in "AB":
+        if run.in_contact[c] and run.pair.models[c].relaxing:
+            for name, level, direction in THERMAL:
+                found.append(watch(name, c, f"lag_{c}", level, direction, terminal=False))
         if f"ceiling_{c}" in run.pair.layout.gauges:
             for name, direction in (("ceiling_reached", +1), ("ceiling_left", -1)):
                 level = log(1.0 - CEILING_MARGIN * (2 - direction))

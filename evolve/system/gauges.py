@@ -22,7 +22,8 @@ def gauge_expressions(plan):
         fill_c: ln(R/R_L); excess_c: (R - R_L)/H, or ln(R/R_L) where a law has no H;
         rate_c: ln of the overflow in solMass/yr; drive_c: growth past the lobe with R = R_L
         imposed [1/yr]; stability_c: zeta_star - zeta_lobe; runaway_c: positive when
-        R > 1.1 R_L or the donor empties itself within 100 dynamical times; mass_c: ln m; phase_c: the clock
+        R > 1.1 R_L or the donor empties itself within 100 dynamical times; mass_c: ln m; lag_c: ln(R/R_eq);
+        phase_c: the clock
         of its model; envelope_c: mass outside the core [solMass]; ceiling_c: ln of what c
         accepts over its ceiling;
         darwin: positive when no stable synchronous orbit exists, (I_A + I_B) n > J/3 (Hut
@@ -33,6 +34,8 @@ def gauge_expressions(plan):
     for c in plan.order:
         gauges[f"mass_{c}"] = f"log(mass_{c})"
         gauges[f"fill_{c}"] = f"log(max(radius_{c}, 1e-99) / lobe_{c})"
+        if plan.components[c].relaxing:
+            gauges[f"lag_{c}"] = f"log(radius_{c} / equilibrium_{c})"
         if plan.components[c].phase:
             gauges[f"phase_{c}"] = f"phase_{c}"
         if plan.components[c].phase == "core":

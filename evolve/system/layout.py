@@ -124,7 +124,8 @@ def _quantities(plan):
     for c in plan.order:
         part = plan.components[c]
         names += [f"{name}_{c}" for name in ("radius", "lobe", "luminosity", "temperature",
-                                             "zeta", "core_mass")]  # fmt: skip
+                                             "zeta", "thermal", "core_mass",
+                                             "equilibrium")]  # fmt: skip
         names += [f"phase_{c}"] * bool(part.phase) + [f"spin_{c}", f"spin_momentum_{c}"] * part.tides
         if part.overflows:
             names += [f"zeta_lobe_{c}", f"excess_{c}"]
