@@ -22,6 +22,7 @@ its lobe), braking_A, braking_B.
 
 from evolve.system.gauges import write_gauges
 from evolve.system.layout import OTHER, has_ceiling, layout, receives, torque_slots
+from evolve.system.response import indented, locked_overflow, response
 
 
 def write(plan):
@@ -61,15 +62,11 @@ def _function(plan, slots, name):
         *_sums(plan),
         *(_return_quantities(plan, slots) if full else _return_rates(plan, slots)),
     ]
-    return [f"def {name}({arguments}):"] + _indented(body)
+    return [f"def {name}({arguments}):"] + indented(body)
 
 
 def _both(lines_of, plan, *more):
     return [line for c in plan.order for line in lines_of(plan, c, *more)]
-
-
-def _indented(lines):
-    return ["    " + line for line in lines]
 
 
 def _bounds(plan):
@@ -133,7 +130,7 @@ def _star(plan, c, full):
     bare = [f"star_{c} = Star({mass_only})  # nothing that acts reads more than its mass"]
     if not part.overflows:
         return bare
-    return [f"if flow_{c}:", *_indented(whole), "else:", *_indented(bare)]
+    return [f"if flow_{c}:", *indented(whole), "else:", *indented(bare)]
 
 
 def _torque_laws(plan):
@@ -196,25 +193,25 @@ def _transfer(plan, c, full):
     o = OTHER[c]
     flowing = _specific(plan, c) * (not part.capture)
     if plan.overflow == "locked":
-        flowing += [f"kept_{o} = share_{o}", *_response(plan, c), *_overflow(plan, c)]
+        flowing += [f"kept_{o} = share_{o}", *response(plan, c), *_overflow(plan, c)]
         after = []
     else:
         flowing += _overflow(plan, c)
-        after = _marginal(plan, c) + _response(plan, c) if full else []
+        after = _marginal(plan, c) + response(plan, c) if full else []
     idle = [f"overflow_{c} = 0.0"]
     if full:
         idle.append(f"zeta_lobe_{c} = nan")
         idle += [f"drive_{c} = 0.0"] * (plan.overflow == "locked")
     if part.capture:
         lines += _specific(plan, c) + _either(c, flowing, idle) + _balance(plan, c)
-        return lines + ([f"if flow_{c}:", *_indented(after)] if after else [])
+        return lines + ([f"if flow_{c}:", *indented(after)] if after else [])
     idle.append(f"accepted_{o} = expelled_{o} = torque_expelled_{c} = 0.0")
     idle += [f"torque_consequential_{c} = 0.0"] * plan.consequential
     return lines + _either(c, flowing + _balance(plan, c) + after, idle)
 
 
 def _either(c, flowing, idle):
-    return [f"if flow_{c}:", *_indented(flowing), "else:", *_indented(idle)]
+    return [f"if flow_{c}:", *indented(flowing), "else:", *indented(idle)]
 
 
 def _excess(plan, c):
@@ -239,81 +236,10 @@ def _specific(plan, c):
     return lines
 
 
-def _zeta_lobe(plan, c, kept, name):
-    """d ln R_L / d ln m along the overflow of component c, `kept` of it being accepted."""
-    o = OTHER[c]
-    leaving = f"consequential_{c}" if plan.consequential else f"(1.0 - {kept}) * specific_{c}"
-    if plan.components[c].tides:  # the donor's matter hands its spin over to the orbit
-        leaving = f"({leaving} - spin_momentum_{c} / mass_{c})"
-    return [
-        f"{name} = 2.0 * mass_{c} * {leaving} / angular_momentum - 2.0 \\",
-        f"    + 2.0 * {kept} * mass_{c} / mass_{o} + (1.0 - {kept}) * mass_{c} / total_mass \\",
-        f"    + slope_{c} * (1.0 + {kept} * mass_{c} / mass_{o})",
-    ]
-
-
-def _response(plan, c):
-    """zeta_lobe and, with R = R_L imposed, how fast the star would grow past its lobe."""
-    lines = [
-        f"slope_{c} = lobe_slope(mass_{c} / mass_{OTHER[c]})",
-        *_zeta_lobe(plan, c, f"kept_{OTHER[c]}", f"zeta_lobe_{c}"),
-    ]
-    if plan.overflow == "locked":
-        lines += _drive(plan, c)
-    return lines
-
-
-def _drive(plan, c):
-    """N of the locked law: d ln(R/R_L)/dt with every law acting but the overflow of c."""
-    o = OTHER[c]
-    torques = ["waves"] if plan.waves else []
-    for s in plan.order:
-        part = plan.components[s]
-        torques += [f"-tide_{s}"] if part.tides else [f"braking_{s}"] * part.braking
-        torques += [f"torque_wind_{s}"] * part.wind
-    kept = {s: "0.0" for s in plan.order}
-    lines = []
-    for s in plan.order:
-        if plan.components[s].capture:
-            receiver = OTHER[s]
-            amount = f"share_{receiver} * captured_{s}"
-            if has_ceiling(plan, receiver):
-                amount = f"min({amount}, ceiling_{receiver})"
-            kept[receiver] = f"caught_{receiver}"
-            lines.append(f"caught_{receiver} = {amount}")
-            torques.append(f"(caught_{receiver} - captured_{s}) * specific_{s}")
-    still = {s: kept[s] + (f" - wind_{s}" if plan.components[s].wind else "") for s in plan.order}
-    lines += [
-        f"still_{c} = {still[c]}",
-        f"still_{o} = {still[o]}",
-        f"drive_{c} = thermal_{c} + zeta_{c} * still_{c} / mass_{c} \\",
-        f"    - 2.0 * ({' + '.join(torques) or '0.0'}) / angular_momentum \\",
-        f"    + 2.0 * (still_{c} / mass_{c} + still_{o} / mass_{o}) \\",
-        f"    - (still_{c} + still_{o}) / total_mass \\",
-        f"    - slope_{c} * (still_{c} / mass_{c} - still_{o} / mass_{o})",
-    ]
-    if plan.eccentric:
-        lines.append(f"drive_{c} += eccentricity_rate / (1.0 + eccentricity)")
-    return lines
-
-
 def _overflow(plan, c):
-    part, o = plan.components[c], OTHER[c]
-    if plan.overflow != "locked":
-        return [f"overflow_{c} = overflow_rate(star_{c}, star_{o}, orbit, overflow_keys)"]
-    lines = [f"overflow_{c} = mass_{c} * drive_{c} / max(zeta_{c} - zeta_lobe_{c}, 1e-9)"]
-    if has_ceiling(plan, o):
-        # The rate is piecewise linear: below the ceiling `share` of what comes on top is
-        # kept, above it nothing. The piece that holds is the one its own rate lies in.
-        before = f"captured_{c}" if part.capture else "0.0"
-        lines += [
-            f"full_{c} = max(ceiling_{o} / max(share_{o}, 1e-99) - {before}, 0.0)",
-            f"if overflow_{c} > full_{c}:",
-            *_indented(_zeta_lobe(plan, c, "0.0", f"beyond_{c}")),
-            f"    rest_{c} = drive_{c} - full_{c} * (zeta_{c} - zeta_lobe_{c}) / mass_{c}",
-            f"    overflow_{c} = full_{c} + mass_{c} * rest_{c} / max(zeta_{c} - beyond_{c}, 1e-9)",
-        ]
-    return lines
+    if plan.overflow == "locked":
+        return locked_overflow(plan, c)
+    return [f"overflow_{c} = overflow_rate(star_{c}, star_{OTHER[c]}, orbit, overflow_keys)"]
 
 
 def _balance(plan, c):
