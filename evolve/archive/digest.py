@@ -2,7 +2,7 @@
 
 The digest covers the contents, so it holds for a file that a tool has packed anew; the seal
 covers the bytes, and is judged before HDF5 sees them: on a flipped byte in its own
-structures the HDF5 library can end the whole process.
+structures the HDF5 library can end the whole process (measured with HDF5 2.0).
 """
 
 import hashlib
@@ -30,10 +30,14 @@ def seal_of(content):
     return SEAL + hashlib.sha256(content).hexdigest().encode() + b"\n"
 
 
-def seal_is_broken(content):
-    """True if a file has a seal that does not fit it; False also where it has none."""
-    content, seal = content[:-SEAL_LENGTH], content[-SEAL_LENGTH:]
-    return seal.startswith(SEAL) and seal != seal_of(content)
+def is_sealed(content):
+    """True if a seal stands at the end, whether or not it fits."""
+    return content[-SEAL_LENGTH:].startswith(SEAL)
+
+
+def seal_fits(content):
+    """True if the seal at the end is that of all before it."""
+    return content[-SEAL_LENGTH:] == seal_of(content[:-SEAL_LENGTH])
 
 
 def digest_of(file):

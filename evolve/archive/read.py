@@ -6,7 +6,7 @@ from pathlib import Path
 
 import numpy as np
 
-from evolve.archive.digest import digest_of, seal_is_broken
+from evolve.archive.digest import digest_of, is_sealed, seal_fits
 from evolve.archive.paths import SIGNATURE
 from evolve.archive.write import FORMAT, LAYOUT
 from evolve.errors import ArchiveError, ConfigError
@@ -39,7 +39,7 @@ def open_history(path):
     content = _content(Path(path))
     try:
         with h5py.File(io.BytesIO(content), "r") as file:
-            _judge(path, file)
+            _judge(path, file, content)
             return _history(file)
     except (OSError, LookupError, RuntimeError, ValueError, TypeError, AttributeError) as error:
         reason = str(error).splitlines()[0] if str(error) else type(error).__name__
@@ -49,20 +49,28 @@ def open_history(path):
 def _content(path):
     """The bytes of a file that may be an archive."""
     try:
-        if path.is_dir() or not path.exists():
-            what = "is a directory" if path.is_dir() else "no such file"
-            raise ConfigError(f"{path}: {what}; give the archive that `evolve run` wrote")
+        what = "is a directory" if path.is_dir() else "" if path.exists() else "no such file"
+    except OSError as error:
+        what = f"cannot be a file ({error.strerror})"
+    if what:
+        raise ConfigError(f"{path}: {what}; give the archive that `evolve run` wrote")
+    try:
         content = path.read_bytes()
     except OSError as error:
         raise ArchiveError(f"{path}: cannot be read ({error.strerror or error})") from error
     if not content.startswith(SIGNATURE):
         raise ArchiveError(f"{path}: is no archive (it does not begin as HDF5 does)")
-    if seal_is_broken(content):
+    if is_sealed(content) and not seal_fits(content):
         raise ArchiveError(f"{path}: is damaged (its checksum does not fit its bytes); {CURE}")
     return content
 
 
-def _judge(path, file):
+def _judge(path, file, content):
+    """Refuse what is foreign, newer or damaged.
+
+    Without a seal, which goes when another tool writes to the file, the bytes must end where
+    HDF5 says: more are what is left of a seal.
+    """
     if file.attrs.get("format") != FORMAT:
         raise ArchiveError(f'{path}: is HDF5 but no archive (its format is not "{FORMAT}")')
     layout = int(file.attrs["layout"])
@@ -71,7 +79,8 @@ def _judge(path, file):
             f"{path}: has the newer layout {layout}; this version reads up to {LAYOUT}: "
             "install a newer evolve"
         )
-    if file.attrs["digest"] != digest_of(file):
+    whole = is_sealed(content) or len(content) == len(file.id.get_file_image())
+    if not whole or file.attrs["digest"] != digest_of(file):
         raise ArchiveError(
             f"{path}: is damaged or was changed (its digest does not fit its contents); {CURE}"
         )

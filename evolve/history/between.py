@@ -38,8 +38,8 @@ def column_between(history, name, row, share):
     Notes
     -----
     The monotone piecewise cubic of Fritsch & Butland 1984, SIAM J. Sci. Stat. Comput. 5, 300
-    (from memory), in the logarithm of the column where both rows are positive. It is
-    not what the solver's own interpolant was, but lies within the solver's error of it, and
+    (from memory), in the logarithm of the column where these rows and their neighbours
+    are positive. It is not what the solver's own interpolant was, but lies within the solver's error of it, and
     it makes no extremum that the rows do not have.
     """
     values = history.columns[name]
@@ -52,8 +52,8 @@ def column_between(history, name, row, share):
     rows = np.stack([np.maximum(row - 1, first), row, row + 1, np.minimum(row + 2, last)])
     time, stencil = history.columns["time"][rows], values[rows]
     with np.errstate(all="ignore"):
-        logarithmic = (stencil[1] > 0.0) & (stencil[2] > 0.0) & (name != "time")
-        work = np.where(logarithmic, np.log(np.abs(stencil)), stencil)
+        logarithmic = (stencil > 0.0).all(axis=0) & (name != "time")
+        work = np.where(logarithmic, np.log(stencil), stencil)
         between = _cubic(time, work, share)
         between = np.where(logarithmic, np.exp(between), between)
     low, high = np.minimum(stencil[1], stencil[2]), np.maximum(stencil[1], stencil[2])
@@ -64,9 +64,12 @@ def column_between(history, name, row, share):
 def _cubic(time, values, share):
     """The Hermite cubic between the middle two of four rows; times and values (4, m)."""
     step, rise = np.diff(time, axis=0), np.diff(values, axis=0)
-    straight = rise / step
-    left = _slope(step[0], step[1], straight[0], straight[1]) * step[1]
-    right = _slope(step[1], step[2], straight[1], straight[2]) * step[1]
+    before, here, after = rise / step
+    with_before, with_after = np.isfinite(before), np.isfinite(after)
+    ahead = np.where(with_after, _end_slope(step[1], step[2], here, after), here)
+    behind = np.where(with_before, _end_slope(step[1], step[0], here, before), here)
+    left = np.where(with_before, _slope(step[0], step[1], before, here), ahead) * step[1]
+    right = np.where(with_after, _slope(step[1], step[2], here, after), behind) * step[1]
     rise = rise[1]
     return values[1] + share * (
         left + share * (3.0 * rise - 2.0 * left - right + share * (left + right - 2.0 * rise))
@@ -74,14 +77,21 @@ def _cubic(time, values, share):
 
 
 def _slope(before, after, slope_before, slope_after):
-    """Slope at a row between two steps; that of the one step where there is no other."""
+    """Slope at a row between two steps: zero at an extremum, else a harmonic mean."""
     weight_before, weight_after = 2.0 * after + before, after + 2.0 * before
     mean = (weight_before + weight_after) / (
         weight_before / slope_before + weight_after / slope_after
     )
-    mean = np.where(slope_before * slope_after > 0.0, mean, 0.0)
-    mean = np.where(np.isfinite(slope_before) & (before > 0.0), mean, slope_after)
-    return np.where(np.isfinite(slope_after) & (after > 0.0), mean, slope_before)
+    return np.where(slope_before * slope_after > 0.0, mean, 0.0)
+
+
+def _end_slope(step, following, slope, slope_following):
+    """Slope at the outer end of a step, of the parabola that runs on through the next one.
+
+    Between none and thrice the slope of the step, within which the cubic is monotone.
+    """
+    found = slope + step * (slope - slope_following) / (step + following)
+    return slope * np.clip(np.where(slope == 0.0, 0.0, found / slope), 0.0, 3.0)
 
 
 def share_at(history, name, row, value):

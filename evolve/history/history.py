@@ -179,9 +179,11 @@ def largest_differences(one, other):
         if a is None or b is None or len(a) != len(b):
             found[name] = float("inf")
             continue
-        other_bits = ~((a == b) | (np.isnan(a) & np.isnan(b)))
-        a, b, size = a[other_bits], b[other_bits], np.abs(a[np.isfinite(a)])
-        gap = np.abs(np.subtract(a, b, where=np.isfinite(a) & np.isfinite(b), out=np.full(len(a), np.inf)))
+        size = np.abs(a[np.isfinite(a)])
+        unequal = ~((a == b) | (np.isnan(a) & np.isnan(b)))
+        a, b = a[unequal], b[unequal]
+        gap = np.full(len(a), np.inf)
+        np.subtract(a, b, out=gap, where=np.isfinite(a) & np.isfinite(b))
         scale = size.max() if size.any() else 1.0
-        found[name] = float(gap.max(initial=0.0) / scale)
+        found[name] = float(np.abs(gap).max(initial=0.0) / scale)
     return found
