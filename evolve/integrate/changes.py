@@ -63,7 +63,7 @@ def common_envelope(values, c, q, efficiency, binding, radius_other):
         mass, core, other, getattr(q, f"lobe_{c}"), q.separation, efficiency, binding
     )
     star = "helium-star" if core > HELIUM_CORE and values["star"] == "track" else "white-dwarf"
-    new = _bare(values, star, core, semi_degenerate=False)
+    new = _bare(values, star, core, semi_degenerate="false")
     model = MODELS[star]
     radius = model.structure(core, 0.0, 0.0, model.prepare(core, new)).radius
     if not survives(core, radius, other, radius_other, separation):

@@ -9,6 +9,20 @@ import numpy as np
 
 from evolve.integrate.solver import IMPLICIT, CoreEquations, Halt, all_finite, guarded, tolerances
 
+FINEST = 1e-12
+"""No tolerance is sharpened below this."""
+
+
+def sharpness(plan):
+    """Part of the tolerance asked for that the equations of a plan need.
+
+    A cubic overflow and a locked tide balance on differences of 1e-5 and less, of radius and
+    lobe, of spin and orbit: at 1e-6 they would be noise.
+    """
+    if any(part.tides for part in plan.components.values()):
+        return 1e-3
+    return 0.05 if plan.overflow == "polytrope" else 1.0
+
 
 class Course:
     """A stretch on its way.
@@ -50,10 +64,11 @@ class Course:
             for name, x in zip(core, stretch.state, strict=False)
         ]
         equations = CoreEquations(stretch.right_side, floor)
-        atol = stretch.atol(self.numerics["rtol"])
+        rtol = max(self.numerics["rtol"] * sharpness(self.run.pair.plan), FINEST)
+        atol = stretch.atol(rtol)
         if self.numerics["atol"] is not None:
             atol[: len(core)] = self.numerics["atol"]
-        rtol, atol = tolerances(self.numerics["rtol"], atol, len(core), method)
+        rtol, atol = tolerances(rtol, atol, len(core), method)
         options = {"jac": equations.jacobian} if method in IMPLICIT else {}
         if self.numerics["max_step"] is not None and not stretch.inspiral:
             options["max_step"] = self.numerics["max_step"]

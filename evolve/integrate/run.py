@@ -182,6 +182,8 @@ class Run:
         if watch.name in ("wake", "sleep"):
             self._switch(f"flow_{c}", watch.name == "wake")
             return
+        if watch.name == "envelope_changes":
+            return  # the equations jump here: a fresh start, and nothing else
         if watch.name == "runaway":
             if not self._already("unstable_overflow", c):
                 self._mark("unstable_overflow", c, row)

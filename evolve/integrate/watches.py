@@ -69,7 +69,7 @@ def watches_for(run):
             found += _lobe_watches(run, c, watch)
         found += _braking_watches(run, c, watch)
         found += _life_watches(run, c, watch)
-        low, high = run.pair.models[c].mass_range
+        low, high = run.pair.mass_range(c)
         found.append(watch("validity", c, f"mass_{c}", log(low), -1, end="validity"))
         found.append(watch("validity", c, f"mass_{c}", log(high), +1, end="validity"))
     if not any(run.pair.models[c].overflows for c in "AB"):
@@ -122,6 +122,8 @@ def _life_watches(run, c, watch):
     """Where a star's own clock ends, and where it becomes something else."""
     found, model = [], run.pair.models[c]
     keys, limits = run.pair.star_keys[c], run.pair.config.values["limits"]
+    if run.pair.laws.braking[c] and model.phase:  # braking jumps with the envelope
+        found.append(watch("envelope_changes", c, f"convective_{c}", 0.5, 0, at_once=False))
     if model.phase and hasattr(keys, "phase_high"):
         name, end = PHASE_ENDS[model.phase]
         found.append(watch(name, c, f"phase_{c}", keys.phase_high, +1, end=end))

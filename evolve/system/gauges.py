@@ -23,6 +23,7 @@ def gauge_expressions(plan):
         rate_c: ln of the overflow in solMass/yr; drive_c: growth past the lobe with R = R_L
         imposed [1/yr]; stability_c: zeta_star - zeta_lobe; runaway_c: positive when
         R > 1.1 R_L or the donor empties itself within 100 dynamical times; mass_c: ln m; lag_c: ln(R/R_eq);
+        convective_c: 1 with a convective envelope, else 0;
         phase_c: the clock
         of its model; envelope_c: mass outside the core [solMass]; ceiling_c: ln of what c
         accepts over its ceiling;
@@ -38,6 +39,7 @@ def gauge_expressions(plan):
             gauges[f"lag_{c}"] = f"log(radius_{c} / equilibrium_{c})"
         if plan.components[c].phase:
             gauges[f"phase_{c}"] = f"phase_{c}"
+            gauges[f"convective_{c}"] = f"convective_{c}"
         if plan.components[c].phase == "core":
             gauges[f"envelope_{c}"] = f"mass_{c} - core_mass_{c}"
         if not plan.components[c].overflows:

@@ -126,7 +126,8 @@ def _quantities(plan):
         names += [f"{name}_{c}" for name in ("radius", "lobe", "luminosity", "temperature",
                                              "zeta", "thermal", "core_mass",
                                              "equilibrium")]  # fmt: skip
-        names += [f"phase_{c}"] * bool(part.phase) + [f"spin_{c}", f"spin_momentum_{c}"] * part.tides
+        names += [f"phase_{c}", f"convective_{c}"] * bool(part.phase)
+        names += [f"spin_{c}", f"spin_momentum_{c}"] * part.tides
         if part.overflows:
             names += [f"zeta_lobe_{c}", f"excess_{c}"]
             names += [f"drive_{c}"] * (plan.overflow == "locked")

@@ -2,7 +2,7 @@
 
 from collections import namedtuple
 from functools import lru_cache
-from math import log, sqrt
+from math import exp, log, sqrt
 from typing import NamedTuple
 
 from evolve.config.units import human
@@ -68,9 +68,11 @@ class Pair:
         values = config.values
         self.config = config
         self.models = {c: MODELS[values[c]["star"]] for c in "AB"}
+        carried = star_keys or {}
         self.star_keys = {
-            c: self.models[c].prepare(values[c]["mass"], values[c]) for c in "AB"
-        } | (star_keys or {})
+            c: carried[c] if c in carried else self.models[c].prepare(values[c]["mass"], values[c])
+            for c in "AB"
+        }
         self.laws = choose_laws(config)
         self.plan, self.functions = plan_of(config, self.laws)
         self.layout = layout(self.plan)
@@ -88,10 +90,8 @@ class Pair:
         self.stops_below = {
             c: values["braking"][c]["stops_below"] if self.laws.braking[c] else 0.0 for c in "AB"
         }
-        self.start = start_state(self)
-        for slot, name in enumerate(self.layout.core):
-            if state and name in state and name[-1] in (star_keys or {}):
-                self.start[slot] = float(state[name])
+        slots = {k: v for k, v in (state or {}).items() if k[-1] in carried}
+        self.start = start_state(self, slots)
 
     def quantities(self, time, state, switches):
         """Everything that columns and events need at one state, by name.
@@ -127,6 +127,12 @@ class Pair:
         }
         return Switches(braking_A=on["A"], braking_B=on["B"])
 
+    def mass_range(self, c):
+        """Masses within which the model of component c means anything [solMass]."""
+        low, high = self.models[c].mass_range
+        keys = self.star_keys[c]
+        return getattr(keys, "mass_low", low), getattr(keys, "mass_high", high)
+
     def gyration(self, c):
         """k2 of the moment of inertia k2 m R2 of component c."""
         written = self.config.values[c].get("gyration")
@@ -144,42 +150,64 @@ def _structure(pair, c, radius=1.0):
     return model.structure(values["mass"], radius, phase, pair.star_keys[c])
 
 
-def start_state(pair):
-    """Core state at the start, from period, separation or fill and the stars' radii."""
-    values = pair.config.values
+def start_state(pair, carried=None):
+    """Core state at the start, from period, separation or fill and the stars' radii.
+
+    Parameters
+    ----------
+    pair : Pair
+    carried : dict, optional
+        Core slot -> value, of a star that goes on from an earlier pair.
+
+    Returns
+    -------
+    list of float
+
+    Raises
+    ------
+    ConfigError
+        If a star starts overfilled.
+    """
+    values, carried = pair.config.values, carried or {}
     orbit = values["orbit"]
     masses = {c: values[c]["mass"] for c in pair.plan.order}
     eccentricity = orbit["eccentricity"]
     fractions = {c: lobe_fraction(masses[c] / masses[OTHER[c]]) for c in pair.plan.order}
-    radii = {c: _start_radius(pair, c) for c in pair.plan.order}
+    radii = {c: _start_radius(pair, c, carried) for c in pair.plan.order}
     separation = _start_separation(pair, masses, radii, fractions)
     lobes = {c: separation * (1.0 - eccentricity) * fractions[c] for c in pair.plan.order}
     for c in pair.plan.order:
         if radii[c] == "lobe":
             radii[c] = lobes[c]
     for c in pair.plan.order:
-        if radii[c] > lobes[c] * (1.0 + OVERFILL):
+        if not carried and radii[c] > lobes[c] * (1.0 + OVERFILL):
             raise ConfigError(_overfilled(pair, c, radii[c], lobes[c], masses, fractions))
     state = [*masses.values(), angular_momentum(*masses.values(), separation, eccentricity)]
     if pair.plan.eccentric:
         state.append(eccentricity / sqrt(1.0 - eccentricity**2))
     state += [log(radii[c]) for c in pair.plan.order if pair.plan.components[c].relaxing]
-    state += [
-        pair.models[c].start_phase(masses[c], values[c])
-        for c in pair.plan.order
-        if pair.plan.components[c].phase
-    ]
+    state += [_start_phase(pair, c, carried) for c in pair.plan.order if pair.plan.components[c].phase]
     omega = mean_motion(separation, sum(masses.values()))
     for c in pair.plan.order:
         if pair.plan.components[c].tides:
             spin = values["tides"][c].get("spin")
             gyration = pair.gyration(c)
-            state.append(gyration * masses[c] * radii[c] ** 2 * (omega if spin is None else spin))
+            momentum = gyration * masses[c] * radii[c] ** 2 * (omega if spin is None else spin)
+            state.append(carried.get(f"spin_momentum_{c}", momentum))
     return [float(x) for x in state]
 
 
-def _start_radius(pair, c):
+def _start_phase(pair, c, carried):
+    values = pair.config.values[c]
+    if f"phase_{c}" in carried:
+        return carried[f"phase_{c}"]
+    return pair.models[c].start_phase(values["mass"], values)
+
+
+def _start_radius(pair, c, carried):
     """The radius at the start, or "lobe" where it is to fill the lobe."""
+    if f"ln_radius_{c}" in carried:
+        return exp(carried[f"ln_radius_{c}"])
     model, written = pair.models[c], pair.config.values[c].get("radius")
     if written == "lobe":
         return "lobe"
