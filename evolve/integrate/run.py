@@ -16,6 +16,12 @@ from evolve.integrate.watches import CONTACT_MARGIN, WAKE, watches_for
 from evolve.system.layout import OTHER
 from evolve.system.pair import Pair
 
+DETAILS = {
+    "burning_ends": "the main sequence of {} is over",
+    "validity": "the mass or the core of {}",
+    "table_end": "component {}",
+}
+"""What more there is to say of an end than its name does."""
 CHATTER = 25
 """So many events in a row without time passing between them are a fault, not a history."""
 
@@ -193,7 +199,7 @@ class Run:
         if watch.end == "unstable_overflow":
             return self._unstable(c)
         if watch.end:
-            return self._finish(watch.end)
+            return self._finish(watch.end, DETAILS.get(watch.name, "").format(c))
         if act := getattr(self, f"_on_{watch.name}", None):
             act(c)
             self.opening_event = self.opening_event or watch.name

@@ -1,0 +1,15 @@
+#!/usr/bin/env bash
+# Remakes everything in this folder: bash runs_demo/remake.sh (with evolve[figures] installed).
+set -euo pipefail
+cd "$(dirname "$0")"
+evolve run ../configs/red_dwarf.toml -o red_dwarf.h5 --replace > red_dwarf.txt
+evolve export red_dwarf.h5 --rows 200 --on time --format ecsv -o red_dwarf.ecsv --replace \
+  --columns time,period,mass_A,mass_B,radius_A,overflow_A,torque_waves,torque_braking
+evolve draw red_dwarf.h5 -o red_dwarf.png --replace
+evolve draw red_dwarf.h5 --figure rate-period --gap -o red_dwarf_rate_period.png --replace
+evolve run ../configs/neutron_star_conservative.toml -o conservative.h5 --replace > /dev/null
+evolve run ../configs/neutron_star_expelling.toml -o expelling.h5 --replace > /dev/null
+evolve compare conservative.h5 expelling.h5 --on mass_A > conservative_or_expelling.txt
+evolve draw conservative.h5 expelling.h5 -o conservative_or_expelling.png --replace
+evolve contact ../configs/red_dwarf.toml > contact.txt
+rm conservative.h5 expelling.h5
