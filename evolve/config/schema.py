@@ -219,6 +219,24 @@ SECTIONS = {
             "binding": _positive("number", "lambda of the common envelope", 0.5, 100.0),
         },
     ),
+    "kick": Section(
+        "a sudden loss of mass of one component, with a kick: at a time, or when it collapses",
+        {
+            "time": _positive("time", "since the start; else when the star collapses"),
+            "mass_lost": Entry("at that time", "mass", 0.0, 1e12, default=0.0),
+            "speed": Entry("of the kick", "speed", 0.0, 1e9, default=0.0),
+            "polar": Entry("angle from the star's orbital velocity", "angle", 0.0, pi, default=0.0),
+            "azimuth": Entry(
+                "angle about it; 90 deg is along the orbit's axis", "angle", -2 * pi, 2 * pi,
+                default=0.0,
+            ),
+            "seed": Entry(
+                "draws the direction, isotropic, in place of the angles", "number", 0, 2**32 - 1,
+                kind="whole",
+            ),
+        },
+        by_component=True,
+    ),
     "limits": Section(
         "the largest masses",
         {

@@ -109,7 +109,7 @@ def _section(reading, section, table, path, place="", missing=False):
 
 def _default_speed(values, table):
     """A wind law that has a speed of its own brings it, unless the config gives one."""
-    if "speed" in values and "speed" not in table and values["law"] in DEFAULT_SPEEDS:
+    if "speed" in values and "speed" not in table and values.get("law") in DEFAULT_SPEEDS:
         values["speed"] = DEFAULT_SPEEDS[values["law"]]
 
 

@@ -4,6 +4,8 @@ Each gives the new config values of a pair, from which the next chapter's equati
 built; the run carries the state over.
 """
 
+from math import acos, pi
+from random import Random
 from typing import NamedTuple
 
 from evolve.laws.envelope import survives, webbink_1984
@@ -71,23 +73,42 @@ def common_envelope(values, c, q, efficiency, binding, radius_other):
     return Becoming(new, core, separation, 0.0)
 
 
-def collapse(values, c, q):
+def collapse(values, c, q, kick):
     """A white dwarf at its limit becomes a neutron star, a neutron star a black hole.
 
     The white dwarf loses the binding energy of the neutron star at once (Lattimer & Yahil
-    1989); the orbit answers as to a sudden loss without a kick (Blaauw 1961). None if the pair
-    does not stay together.
+    1989); the orbit answers as to a sudden loss with the config's kick (Blaauw 1961; Hills
+    1983). None if the pair does not stay together.
     """
     mass = getattr(q, f"mass_{c}")
-    if values["star"] != "white-dwarf":
-        new = _bare(values, "compact", mass, kind="black-hole")
-        return Becoming(new, mass, q.separation, q.eccentricity)
-    left = collapsed_mass(mass)
-    after = sudden_change(mass, left, getattr(q, f"mass_{OTHER[c]}"), q.separation)
-    if not after.bound:
-        return None
-    new = _bare(values, "compact", left, kind="neutron-star")
-    return Becoming(new, left, after.separation, after.eccentricity)
+    kind = "neutron-star" if values["star"] == "white-dwarf" else "black-hole"
+    left = collapsed_mass(mass) if kind == "neutron-star" else mass
+    return _after_kick(_bare(values, "compact", left, kind=kind), left, c, q, kick)
 
 
-__all__ = ["Becoming", "collapse", "common_envelope", "remnant"]
+def sudden_loss(values, c, q, kick):
+    """A component that loses mass at once and is kicked, but stays what it is."""
+    left = getattr(q, f"mass_{c}") - kick["mass_lost"]
+    return _after_kick({**values, "mass": left}, left, c, q, kick)
+
+
+def _after_kick(new, left, c, q, kick):
+    if left == getattr(q, f"mass_{c}") and not kick["speed"]:
+        return Becoming(new, left, q.separation, q.eccentricity)
+    polar, azimuth = direction(kick)
+    after = sudden_change(
+        getattr(q, f"mass_{c}"), left, getattr(q, f"mass_{OTHER[c]}"), q.separation,
+        kick["speed"], polar, azimuth,
+    )  # fmt: skip
+    return Becoming(new, left, after.separation, after.eccentricity) if after.bound else None
+
+
+def direction(kick):
+    """Polar angle and azimuth of a kick [rad]: as given, or isotropic by its seed."""
+    if kick["seed"] is None:
+        return kick["polar"], kick["azimuth"]
+    generator = Random(kick["seed"])
+    return acos(1.0 - 2.0 * generator.random()), 2.0 * pi * generator.random()
+
+
+__all__ = ["Becoming", "collapse", "common_envelope", "direction", "remnant", "sudden_loss"]

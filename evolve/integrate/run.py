@@ -7,7 +7,7 @@ from dataclasses import replace
 
 import numpy as np
 
-from evolve.integrate.changes import collapse, common_envelope, remnant
+from evolve.integrate.changes import collapse, common_envelope, remnant, sudden_loss
 from evolve.integrate.course import Course
 from evolve.integrate.outcomes import sentence
 from evolve.integrate.recorder import Recorder
@@ -76,7 +76,7 @@ class Run:
         self.steps = self.evaluations = self.jacobians = self.stretches = 0
         self.idle = 0
         self.opening_event = ""
-        self.ignored = set()
+        self.ignored, self.kicked = set(), set()
 
     # What watches and chapters ask -----------------------------------------------------
 
@@ -252,11 +252,25 @@ class Run:
         self._become(c, remnant(self.pair.config.values[c], c, self.now()))
 
     def _on_collapse(self, c):
-        after = collapse(self.pair.config.values[c], c, self.now())
+        values = self.pair.config.values
+        kick = {**values["kick"][c], "speed": 0.0} if values["kick"][c]["time"] else values["kick"][c]
+        self._sudden(c, collapse(values[c], c, self.now(), kick))
+
+    def _on_kick(self, c):
+        self.kicked.add(c)
+        values, quantities = self.pair.config.values, self.now()
+        if quantities.eccentricity > 0.0:
+            return self._finish("failed", "a kick is known for circular orbits only")
+        if values["kick"][c]["mass_lost"] >= getattr(quantities, f"mass_{c}"):
+            return self._finish("failed", f"{c} has no such mass to lose")
+        after = sudden_loss(values[c], c, quantities, values["kick"][c])
+        return self._sudden(c, after, (c,))
+
+    def _sudden(self, c, after, kept=()):
         if after is None:
             self._mark("unbound", "", len(self.recorder) - 1)
             return self._finish("unbound")
-        return self._become(c, after)
+        return self._become(c, after, kept)
 
     def _unstable(self, c):
         """Unstable overflow: the history stops, goes on, or goes through a common envelope."""
@@ -279,8 +293,11 @@ class Run:
         self.opening_event = self.opening_event or "common_envelope"
         return None
 
-    def _become(self, c, after):
-        """Go on with the pair in which component c is what it has become."""
+    def _become(self, c, after, kept=()):
+        """Go on with the pair in which component c is what it has become.
+
+        `kept` names c where it is the same star still, with its radius and its clock.
+        """
         other, old = OTHER[c], dict(zip(self.pair.layout.core, self.state, strict=False))
         values = dict(self.pair.config.values)
         values[c] = after.values
@@ -290,7 +307,7 @@ class Run:
             "period": None, "fill": None,
         }  # fmt: skip
         config = replace(self.pair.config, values=values)
-        self.pair = Pair(config, {other: self.pair.star_keys[other]}, old)
+        self.pair = Pair(config, {s: self.pair.star_keys[s] for s in (other, *kept)}, old)
         self.acts.append(Act(len(self.recorder), self.pair))
         self.switches = self.pair.first_switches()
         self.in_contact = {"A": False, "B": False}

@@ -127,6 +127,9 @@ def _life_watches(run, c, watch):
     if model.phase and hasattr(keys, "phase_high"):
         name, end = PHASE_ENDS[model.phase]
         found.append(watch(name, c, f"phase_{c}", keys.phase_high, +1, end=end))
+    kick = run.pair.config.values["kick"][c]["time"]
+    if kick and c not in run.kicked:
+        found.append(watch("kick", c, "time", kick, +1))
     if model.phase == "core":
         found.append(watch("envelope_exhausted", c, f"envelope_{c}", THINNEST, -1))
     kind = run.pair.config.values[c].get("kind")
