@@ -99,7 +99,7 @@ def _remove_column(file):
 
 
 def _rename_column(file):
-    file.move("trajectory/mass_A", "trajectory/core_mass_A")
+    file.move("trajectory/period", "trajectory/perioe")  # the same place in the order of names
 
 
 def _claim_complete(file):

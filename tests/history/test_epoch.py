@@ -169,6 +169,16 @@ def test_no_extremum_that_the_rows_do_not_have():
     assert found.min() == 1.0 and found.max() == 100.0 and (np.diff(found) >= 0.0).all()
 
 
+def test_the_first_step_of_a_chapter_does_not_overshoot():
+    """A slow rise before a steep fall: the parabola through the three would turn in the step."""
+    history = synthetic()
+    history.columns["period"] = np.where(np.arange(4 * ROWS) == 1, 1.1, 1.0)
+    history.columns["period"][2:] = 0.1
+    step = history["time"][1]
+    found = [history.at(time=share * step)["period"] for share in np.linspace(0.01, 0.99, 50)]
+    assert (np.diff(found) > 0.0).all() and found[-1] < 1.1
+
+
 def test_between_rows_of_a_real_history_as_good_as_the_rows():
     """A pair of white dwarfs spiralling in, against Peters 1964, Phys. Rev. 136, B1224, eq. 5.10:
     P^(8/3) falls linearly in time on a circular orbit of constant masses."""
@@ -196,6 +206,8 @@ def test_sampling_in_time():
 def test_a_step_that_divides_the_span_gives_the_last_row_once():
     assert sampled(HISTORY, every=1e8)["time"].tolist() == [1e8 * n for n in range(11)]
     assert len(sampled(HISTORY, every=1e9 / 3.0)["time"]) == 4
+    assert 29 * (1e9 / 29) < 1e9
+    assert len(sampled(HISTORY, every=1e9 / 29)["time"]) == 30
     assert sampled(HISTORY, every=5e9)["time"].tolist() == [0.0, 1e9]
 
 
