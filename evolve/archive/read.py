@@ -105,6 +105,11 @@ def _history(file):
     }
     return History(
         columns={"time": columns.pop("time"), **columns},
+        references={
+            name: str(data.attrs["references"])
+            for name, data in file["trajectory"].items()
+            if "references" in data.attrs
+        },
         events=_events(file["events"]),
         chapters=_chapters(file["chapters"]),
         ledger=_ledger(file["ledger"]),

@@ -117,7 +117,10 @@ def _trajectory(file, history):
     time = None
     for name, values in history.columns.items():
         values = values.astype(np.int8) if COLUMNS[name].flags else values
-        dataset = _dataset(group, name, values, **attributes_of(name))
+        attributes = attributes_of(name)
+        if name in history.references:
+            attributes["references"] = history.references[name]
+        dataset = _dataset(group, name, values, **attributes)
         if time is None:
             time = dataset
             time.make_scale("time")

@@ -9,8 +9,10 @@ def arguments(parser):
     """The command's own arguments."""
     parser.add_argument("config", nargs="+", metavar="CONFIG")
     add_settings(parser)
-    parser.add_argument("--draws", type=int, default=200, metavar="N", help="for errors (200)")
-    parser.add_argument("--seed", type=int, default=1, metavar="N", help="of the draws (1)")
+    parser.add_argument(
+        "--draws", type=int, metavar="N", help="for errors; [draw] count of the config, or 200"
+    )
+    parser.add_argument("--seed", type=int, metavar="N", help="of the draws; [draw] seed, or 1")
 
 
 def run(arguments):
@@ -39,11 +41,14 @@ def _one(path, arguments):
         answer = contact(config, progress)
     title = config.values["title"] or path
     lines, result = (_reached if answer.reached else _missed)(title, answer, config)
-    if uncertain:
-        configs = drawn_configs(config, uncertain, arguments.draws, arguments.seed)
-        with counting_bar(arguments.draws, "pair", arguments.quiet) as count:
-            spreads = contact_distribution(configs, count)
-        more, result["distribution"] = _spread_lines(spreads, arguments)
+    asked = config.values["draw"]
+    keys = {**asked.keys, **uncertain}
+    if keys:
+        draws = asked.count if arguments.draws is None else arguments.draws
+        seed = asked.seed if arguments.seed is None else arguments.seed
+        with counting_bar(draws, "pair", arguments.quiet) as count:
+            spreads = contact_distribution(drawn_configs(config, keys, draws, seed), count)
+        more, result["distribution"] = _spread_lines(spreads, draws, seed)
         lines += more
     return lines, result, list(config.warnings), answer.reached
 
@@ -104,7 +109,7 @@ def _result(answer):
     }
 
 
-def _spread_lines(spreads, arguments):
+def _spread_lines(spreads, draws, seed):
     units = {"time": "yr", "period": "h", "mass_A": "solMass", "mass_B": "solMass"}
     rows = [
         [f"{name} at contact" if name != "time" else "time to contact",
@@ -112,13 +117,13 @@ def _spread_lines(spreads, arguments):
            ("median", "low_68", "high_68", "low_95", "high_95"))]
         for name, s in spreads.items()
     ]  # fmt: skip
-    head = [f"{arguments.draws} draws, seed {arguments.seed}", "median", "68 % from", "to", "95 % from", "to"]
+    head = [f"{draws} draws, seed {seed}", "median", "68 % from", "to", "95 % from", "to"]
     missing = spreads["time"].missing
     lines = ["", *aligned(head, rows)]
     if missing:
-        lines.append(f"{missing} of {arguments.draws} draws reach no contact and are left out")
+        lines.append(f"{missing} of {draws} draws reach no contact and are left out")
     result = {
         name: {**{k: v for k, v in s._asdict().items()}, "unit": units[name]}
         for name, s in spreads.items()
     }
-    return lines, {**result, "draws": arguments.draws, "seed": arguments.seed}
+    return lines, {**result, "draws": draws, "seed": seed}

@@ -1,6 +1,7 @@
 """Completes a config and finds everything that is wrong with it, all at once."""
 
 from evolve import stars
+from evolve.config.draws import read_draws
 from evolve.config.components import complete_component, judge_pair, settle_masses
 from evolve.config.reading import Reading
 from evolve.config.schema import SECTIONS, TOP
@@ -40,15 +41,17 @@ def complete(raw, name, files, allow_code=False, as_set=()):
         With every problem found.
     """
     reading = Reading(name, files, allow_code, as_set)
+    known = [*TOP, "A", "B", *SECTIONS, "draw"]
     for key in raw:
-        if key not in TOP and key not in SECTIONS and key not in ("A", "B"):
-            reading.unknown(key, raw[key], [*TOP, "A", "B", *SECTIONS])
+        if key not in known:
+            reading.unknown(key, raw[key], known)
     values = {key: reading.entry(entry, raw, key, key) for key, entry in TOP.items()}
     values |= {c: complete_component(reading, raw, c) for c in "AB"}
     values |= complete_sections(reading, raw)
     if settle_masses(reading, raw, values) and values["A"] and values["B"]:
         judge_pair(reading, raw, values)
     _judge_waves(reading, values)
+    values["draw"] = read_draws(reading, reading.table(raw, "draw", "draw"))
     if reading.problems:
         raise ConfigError(reading.problems)
     _warn_of_idle_braking(reading, raw, values)

@@ -54,6 +54,8 @@ class History:
     sources : sequence of str
         Keys of the bibliography.
     warnings : list of str
+    references : dict of str, optional
+        Column -> keys of the bibliography, for what made it.
     versions : dict of str, optional
         Of what computed it; the present ones by default.
 
@@ -64,13 +66,14 @@ class History:
 
     def __init__(self, columns, events, chapters, ledger, outcome, message, complete, title="",
                  note="", config_text="", config_files=None, statistics=None, sources=(),
-                 warnings=(), versions=None):  # fmt: skip
+                 warnings=(), versions=None, references=None):  # fmt: skip
         self.columns = columns
         self.events, self.chapters, self.ledger = list(events), list(chapters), ledger
         self.outcome, self.message, self.complete = outcome, message, bool(complete)
         self.title, self.note, self.config_text = title, note, config_text
         self.config_files = dict(config_files or {})
         self.statistics = dict(statistics or {})
+        self.references = dict(references or {})
         self.sources, self.warnings = tuple(sources), list(warnings)
         self.versions = dict(versions) if versions is not None else present_versions()
 

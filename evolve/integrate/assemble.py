@@ -35,6 +35,7 @@ def history_of(run):
         statistics=_statistics(run),
         sources=tuple(dict.fromkeys(key for act in run.acts for key in sources_of(act.pair))),
         warnings=list(config.warnings),
+        references=references_of(run.acts),
     )
 
 
@@ -136,6 +137,7 @@ def _balance_at(run, row):
 def _statistics(run):
     numerics = run.numerics
     return {
+        "engine": "compiled" if numerics["engine"] == "compiled" else "plain",
         "method": numerics["method"],
         "rtol": numerics["rtol"],
         "steps": run.steps,
@@ -157,3 +159,28 @@ def sources_of(pair):
     for c in "AB":
         keys += pair.models[c].sources
     return tuple(dict.fromkeys(keys))
+
+
+def references_of(acts):
+    """Column -> bibliography keys of the laws and stars that made it."""
+    found = {}
+
+    def add(column, keys):
+        found[column] = tuple(dict.fromkeys([*found.get(column, ()), *keys]))
+
+    for act in acts:
+        laws = act.pair.laws
+        whole = {"torque_waves": laws.waves, "torque_consequential": laws.consequential}
+        for c in "AB":
+            whole |= {f"overflow_{c}": laws.overflow, f"wind_{c}": laws.wind[c]}
+            whole |= {f"captured_{c}": laws.capture[c], f"accepted_{c}": laws.ceiling[c]}
+            add(f"lobe_{c}", ["eggleton-1983"])
+            for name in ("radius", "luminosity", "temperature"):
+                add(f"{name}_{c}", act.pair.models[c].sources)
+            for column, law in (("torque_braking", laws.braking[c]), ("torque_tides", laws.tides[c])):
+                add(column, law.law.sources if law else ())
+        for column, chosen in whole.items():
+            add(column, getattr(getattr(chosen, "law", None), "sources", ()))
+        for _, chosen in laws.expulsion.values():
+            add("torque_expelled", chosen.law.sources)
+    return {column: " ".join(keys) for column, keys in found.items() if keys}

@@ -1,11 +1,16 @@
-"""Configs drawn from values with errors."""
+"""Configs drawn from values with errors, or from the [draw] table of a config."""
 
 import numpy as np
 
 from evolve.config import read_config
+from evolve.config.draws import Drawn
+from evolve.config.settings import parse_setting
 from evolve.config.units import parse_uncertain
 from evolve.errors import ConfigError
 from evolve.studies.draws import draw
+
+TRIES = 100
+"""Draws that make no legal config are drawn again, so often at most."""
 
 
 def split_settings(settings):
@@ -19,51 +24,57 @@ def split_settings(settings):
     -------
     plain : list of str
         Those with an error are among them with their central value.
-    uncertain : dict of (number, plus, minus, unit)
-        Key -> the value and its errors in the unit written.
+    uncertain : dict of Drawn
+        By key.
     """
     plain, uncertain = [], {}
     for text in settings:
-        key, equals, value = text.partition("=")
-        parts = _parts(value.strip().strip('"')) if equals else None
-        if parts is None:
+        key, value = parse_setting(text)
+        drawn = _with_error(value)
+        if drawn is None:
             plain.append(text)
             continue
-        uncertain[key.strip()] = parts
-        plain.append(f'{key.strip()}="{parts[0]!r} {parts[3]}"' if parts[3] else f"{key.strip()}={parts[0]!r}")
+        uncertain[key] = drawn
+        central = drawn.text(drawn.first)
+        plain.append(f'{key}="{central}"' if drawn.unit else f"{key}={central}")
     return plain, uncertain
 
 
-def _parts(text):
-    """Number, errors and unit of "0.60+-0.02 Msun"; None if it has no errors."""
-    number, _, unit = text.partition(" ") if "+" in text else (text, "", "")
-    if "+-" not in text and not ("+" in text[1:] and "-" in text[1:]):
+def _with_error(value):
+    """What "0.60+-0.02 Msun" is drawn from; None for a value without an error."""
+    if not isinstance(value, str) or "+" not in value[1:]:
         return None
-    words = text.rsplit(" ", 1)
+    words = value.strip().rsplit(" ", 1)
     unit = words[1] if len(words) == 2 and words[1][:1].isalpha() else ""
-    bare = words[0] if unit else text
     try:
-        value, plus, minus = parse_uncertain(bare, "number")
+        found = parse_uncertain(words[0] if unit else value, "number")
     except ConfigError:
         return None
-    return value, plus, minus, unit
+    return Drawn("normal", *found, unit) if found[1] or found[2] else None
 
 
-def drawn_configs(config, uncertain, count, seed):
+def numbers(generator, drawn, count):
+    """Draws of one key in the unit written, ndarray (count,)."""
+    if drawn.kind == "normal":
+        return draw(generator, drawn.first, drawn.second, drawn.third, count)
+    if drawn.kind == "uniform":
+        return generator.uniform(drawn.first, drawn.second, count)
+    return np.exp(generator.uniform(np.log(drawn.first), np.log(drawn.second), count))
+
+
+def drawn_configs(config, keys, count, seed):
     """Configs with drawn values.
 
     Parameters
     ----------
     config : Config
-    uncertain : dict
-        As `split_settings` gives it.
+    keys : dict of Drawn
     count, seed : int
 
     Yields
     ------
     Config
-        The same ones for the same seed. Draws that make no legal config are drawn again, a
-        hundred times at most.
+        The same ones for the same seed.
 
     Raises
     ------
@@ -74,17 +85,16 @@ def drawn_configs(config, uncertain, count, seed):
         raise ConfigError(f"--draws {count}: allowed is 2 or more")
     generator = np.random.default_rng(seed)
     for _ in range(count):
-        for _ in range(100):
-            values = {key: draw(generator, *parts[:3], 1)[0] for key, parts in uncertain.items()}
-            changes = {
-                key: f"{float(value)!r} {uncertain[key][3]}" if uncertain[key][3] else float(value)
-                for key, value in values.items()
-            }
-            try:
-                drawn = read_config(config, set=changes)
-                break
-            except ConfigError as error:
-                refused = error
-        else:
-            raise ConfigError(f"none of 100 draws makes a legal config; the last one: {refused}")
-        yield drawn
+        yield _one(config, keys, generator)
+
+
+def _one(config, keys, generator):
+    for _ in range(TRIES):
+        changes = {
+            key: drawn.text(numbers(generator, drawn, 1)[0]) for key, drawn in keys.items()
+        }
+        try:
+            return read_config(config, set=changes)
+        except ConfigError as error:
+            refused = error
+    raise ConfigError(f"none of {TRIES} draws makes a legal config; the last one: {refused}")

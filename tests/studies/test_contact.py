@@ -117,9 +117,44 @@ def test_distribution_is_the_same_for_the_same_seed():
 )
 def test_settings_with_errors(text, expected):
     _, uncertain = split_settings([text])
-    assert list(uncertain.values()) == [expected]
+    assert [tuple(drawn)[1:] for drawn in uncertain.values()] == [expected]
 
 
 @pytest.mark.parametrize("text", ["A.mass=0.6 Msun", "end.time=1e+9 yr", "A.star=dwarf"])
 def test_settings_without(text):
     assert split_settings([text]) == ([text], {})
+
+
+def test_draw_table_of_a_config():
+    """[draw] in the config: uniform and log-uniform stay in their ranges, the seed decides."""
+    table = {
+        "orbit.separation": {"uniform": ["1.2 Rsun", "1.6 Rsun"]},
+        "A.mass": {"log-uniform": ["0.5 Msun", "0.9 Msun"]},
+        "count": 30, "seed": 5,
+    }  # fmt: skip
+    config = rigid(draw=table, end={"time": "100 Gyr"})
+    asked = config.values["draw"]
+    drawn = list(drawn_configs(config, asked.keys, asked.count, asked.seed))
+    separations = [c.values["orbit"]["separation"] for c in drawn]
+    masses = [c.values["A"]["mass"] for c in drawn]
+    assert len(drawn) == 30
+    assert 1.2 <= min(separations) < 1.3 and 1.5 < max(separations) <= 1.6
+    assert 0.5 <= min(masses) < 0.6 and 0.75 < max(masses) <= 0.9
+    again = [c.values["A"]["mass"] for c in drawn_configs(config, asked.keys, 30, 5)]
+    assert again == masses
+
+
+@pytest.mark.parametrize(
+    ("table", "said"),
+    [
+        ({"A.mass": {"normal": ["0.7 Msun", "-0.1 Msun"]}}, "negative"),
+        ({"A.mass": {"gaussian": ["0.7 Msun", "0.1 Msun"]}}, "unknown"),
+        ({"A.mass": {"uniform": ["0.7 Msun", "0.1 Msun"]}}, "low < high"),
+        ({"A.mass": {"uniform": ["0.7 Msun", "0.9 kg"]}}, "same unit"),
+        ({"A.mass": "0.7 Msun"}, "allowed: a table"),
+        ({"count": 1}, "2 or more"),
+    ],
+)
+def test_wrong_draw_tables(table, said):
+    with pytest.raises(evolve.ConfigError, match=said):
+        rigid(draw=table)
