@@ -17,6 +17,7 @@ COMMANDS = {
     "contact": "when a pair reaches contact, which component, what drove it",
     "shrink": "how long gravitational waves take to merge two masses",
     "compare": "histories side by side, with their differences",
+    "sweep": "many histories over axes and draws; resumes; one archive",
     "draw": "figures of histories",
     "lobe": "Roche lobes, Lagrange points and stability limits of a mass ratio",
     "laws": "every law and star: keys, units, validity, source",

@@ -152,6 +152,11 @@ def read_config_text(text, files=None, name="config"):
     return _config(parse_toml(text, name), text, None, name, Files(None, files), False)
 
 
+def config_of_parts(raw, files, folder, name, allow_code=False):
+    """A config from what another process was sent of it: `Config`'s fields of these names."""
+    return _config(raw, toml_text(raw), None, name, Files(folder, files), allow_code)
+
+
 def parse_toml(text, name):
     """The dict that a TOML text says.
 
