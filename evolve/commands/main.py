@@ -18,6 +18,7 @@ COMMANDS = {
     "shrink": "how long gravitational waves take to merge two masses",
     "compare": "histories side by side, with their differences",
     "sweep": "many histories over axes and draws; resumes; one archive",
+    "origin": "which starting pairs pass through an observed one",
     "draw": "figures of histories",
     "lobe": "Roche lobes, Lagrange points and stability limits of a mass ratio",
     "laws": "every law and star: keys, units, validity, source",

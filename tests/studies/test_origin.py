@@ -1,0 +1,119 @@
+"""Origins: synthetic starts are found again; both branches where there are two; plain misses."""
+
+import textwrap
+
+import numpy as np
+import pytest
+
+import evolve
+from evolve.errors import ConfigError
+from evolve.studies.origin import matches, origin, read_observed
+
+PAIR = """
+    [base]
+    A = {{ mass = "0.15 Msun", star = "white-dwarf" }}
+    B = {{ mass = "0.8 Msun", star = "white-dwarf" }}
+    orbit = {{ period = "40 min" }}
+    overflow = {{ law = "locked" }}
+    end = {{ time = "3 Gyr", A = {{ mass_below = "0.01 Msun" }} }}
+    [vary]
+    "orbit.period" = {{ from = "20 min", to = "90 min", count = 5, spacing = "log" }}
+    "B.mass" = {{ from = "0.6 Msun", to = "1.0 Msun", count = 5 }}
+    [observed]
+    {observed}
+"""
+
+
+def study(folder, observed, text=PAIR):
+    path = folder / "study.toml"
+    path.write_text(textwrap.dedent(text.format(observed=observed)))
+    return path
+
+
+def run(period, mass):
+    return evolve.run(
+        {
+            "A": {"mass": 0.15, "star": "white-dwarf"}, "B": {"mass": mass, "star": "white-dwarf"},
+            "orbit": {"period": f"{period!r} min"}, "overflow": {"law": "locked"},
+            "end": {"time": "3 Gyr", "A": {"mass_below": 0.01}},
+        }
+    )  # fmt: skip
+
+
+STARTS = [(float(p), float(m)) for p, m in zip(
+    np.random.default_rng(8).uniform(25, 80, 10), np.random.default_rng(9).uniform(0.65, 0.95, 10),
+    strict=True,
+)]  # fmt: skip
+
+
+@pytest.mark.slow
+@pytest.mark.parametrize(("period", "mass"), STARTS)
+def test_synthetic_starts_are_recovered_within_one_per_cent(tmp_path, period, mass):
+    """Age, period and masses of a pair somewhere on its way lead back to where it started."""
+    history = run(period, mass)
+    epoch = history.at(mass_A=0.06)
+    observed = (
+        f'time = ["{epoch["time"]!r} yr", "{0.01 * epoch["time"]!r} yr"]\n    '
+        f'period = ["{epoch["period"]!r} h", "{0.01 * epoch["period"]!r} h"]\n    '
+        f'mass_B = ["{epoch["mass_B"]!r} Msun", "0.005 Msun"]\n    '
+        f'mass_A = ["0.06 Msun", "0.001 Msun"]'
+    )
+    best = origin(study(tmp_path, observed))[0]
+    assert best.fits
+    assert best.start["orbit.period"] == pytest.approx(period, rel=0.01)
+    assert best.start["B.mass"] == pytest.approx(mass, rel=0.01)
+    low, high = best.ranges["B.mass"]
+    assert low < best.start["B.mass"] < high
+    assert best.match.branch == ("overflow_A", 1, "rising")
+    assert "contact" in best.match.before
+
+
+def test_both_branches_before_and_after_the_period_minimum(tmp_path):
+    """10 min happens twice: while waves shrink the pair, and again when transfer widens it."""
+    found = origin(study(tmp_path, 'period = ["10 min", "0.2 min"]\n    mass_B = ["0.85 Msun", "0.06 Msun"]'))
+    branches = {entry.match.branch for entry in found if entry.fits}
+    assert ("detached", 0, "falling") in branches
+    assert ("overflow_A", 1, "rising") in branches
+
+
+def test_when_nothing_fits_it_says_what_came_nearest(tmp_path):
+    found = origin(study(tmp_path, 'period = ["10 min", "0.1 min"]\n    mass_A = ["0.4 Msun", "0.01 Msun"]'))
+    assert found and not any(entry.fits for entry in found)
+    assert found[0].match.deviations["mass_A"] < -3.0
+
+
+def test_limits_and_asymmetric_errors():
+    observed = read_observed(
+        {"overflow_A": "< 1e-9 Msun/yr", "mass_A": ["0.17 Msun", "0.02 Msun", "0.05 Msun"],
+         "period": "1.9 +0.1 -0.2 h"}, "study",
+    )  # fmt: skip
+    rate, mass, period = observed
+    assert rate.deviation(np.array([0.0, 1e-10, 1e-9])) == pytest.approx([0.0, 0.0, 0.0])
+    assert rate.deviation(1e-8) == pytest.approx(20.0)  # a decade above, 0.05 dex a sigma
+    assert mass.deviation(0.19) == pytest.approx(1.0) and mass.deviation(0.12) == pytest.approx(-1.0)
+    assert period.value == pytest.approx(1.9) and period.minus == pytest.approx(0.2)
+
+
+def test_a_history_matches_itself():
+    history = run(40.0, 0.8)
+    row = len(history) // 2
+    observed = read_observed(
+        {"period": [f"{float(history['period'][row])!r} h", "0.001 h"],
+         "mass_A": [f"{float(history['mass_A'][row])!r} Msun", "0.001 Msun"]}, "study",
+    )  # fmt: skip
+    best = min(matches(history, observed), key=lambda match: match.mismatch)
+    assert best.mismatch < 1e-12 and best.time == pytest.approx(history["time"][row])
+
+
+@pytest.mark.parametrize(
+    ("observed", "said"),
+    [
+        ("colour = [1, 2]", "no such column"),
+        ('period = ["1.9 h"]', "allowed"),
+        ('period = "1.9 h"', "error above 0"),
+        ('period = ["1.9 Msun", "0.1 Msun"]', "Msun"),
+    ],
+)
+def test_wrong_observations(tmp_path, observed, said):
+    with pytest.raises(ConfigError, match=said):
+        origin(study(tmp_path, observed))
