@@ -1,4 +1,4 @@
-"""evolve draw: figures of histories."""
+"""evolve draw: figures of histories and studies."""
 
 from pathlib import Path
 
@@ -20,22 +20,32 @@ def arguments(parser):
     parser.add_argument(
         "--gap", action="store_true", help="mark the observed period gap (rate-period)"
     )
+    parser.add_argument("--result", metavar="NAME", help="of a study's archive; its first result")
     parser.add_argument("-o", "--output", metavar="FILE", help=".png, .svg or .pdf")
     parser.add_argument("--replace", action="store_true", help="overwrite an existing file")
 
 
 def run(arguments):
     """Read, draw, write."""
-    from evolve.archive import check_output, open_history
+    from evolve.archive import check_output, is_archive, open_history
     from evolve.errors import ConfigError
     from evolve.figures.history import history_figure, rate_period_figure
+    from evolve.figures.study import sweep_figure
     from evolve.figures.style import save_figure
+    from evolve.studies.study_archive import is_study, open_study
 
     first = Path(arguments.files[0])
-    output = Path(arguments.output or f"{first.stem}_{arguments.figure}.png")
+    study = is_archive(first) and is_study(first)
+    kind = "sweep" if study else arguments.figure
+    output = Path(arguments.output or f"{first.stem}_{kind}.png")
     if output.suffix not in SUFFIXES:
         raise ConfigError(f"{output}: allowed are files in {', '.join(SUFFIXES)}")
     check_output(output, arguments.replace)
+    if study:
+        if len(arguments.files) > 1:
+            raise ConfigError("a study is drawn alone; give one archive")
+        save_figure(sweep_figure(open_study(first), arguments.result), output)
+        return Answer([f"drawn to {output}"], {"file": str(output)})
     histories = [open_history(path) for path in arguments.files]
     names = [Path(path).stem for path in arguments.files]
     if arguments.figure == "history":

@@ -14,9 +14,12 @@ def arguments(parser):
 
 def run(arguments):
     """Read and tell."""
-    from evolve.archive import open_history
+    from evolve.archive import is_archive, open_history
     from evolve.commands.summary import history_result, summary
+    from evolve.studies.study_archive import is_study, open_study
 
+    if is_archive(arguments.file) and is_study(arguments.file):
+        return _study(open_study(arguments.file))
     history = open_history(arguments.file)
     if arguments.at:
         return _epoch(history, arguments.at)
@@ -65,3 +68,19 @@ def _epoch(history, text):
     rows = [[name, of_column(name, value, 6)] for name, value in epoch.items()]
     result = {name: scalar(value, history.units[name]) for name, value in epoch.items()}
     return Answer(aligned(["column", "value"], rows), {"epoch": text, "state": result})
+
+
+def _study(study):
+    """What is in a study's archive."""
+    axes = [[s.key, str(len(s.values)), f"{s.values[0]} .. {s.values[-1]}", s.unit] for s in study.scales]
+    results = [[name, study.units[name] or "-"] for name in study.values]
+    lines = [study.title] if study.title else []
+    lines += ["", *aligned(["axis", "points", "from .. to", "unit"], axes), ""]
+    lines += aligned(["result", "unit"], results)
+    lines += ["", f"{study.codes.size} points, {study.failed} failed"]
+    result = {
+        "title": study.title, "points": study.codes.size, "failed": study.failed,
+        "axes": {s.key: {"unit": s.unit, "values": s.values} for s in study.scales},
+        "results": {n: {"unit": study.units[n], "values": v} for n, v in study.values.items()},
+    }  # fmt: skip
+    return Answer(lines, result)
