@@ -13,6 +13,7 @@ from evolve.figures.style import (
     SERIES,
     label_of,
     new_figure,
+    plain_log_ticks,
     styled,
 )
 from evolve.studies.compare import abscissa_of
@@ -169,7 +170,7 @@ def _label_abscissa(axis, histories, on, alone):
         axis.set_xlabel(label_of(on))
         if on == "period":
             axis.set_xscale("log")
-            _plain_log_ticks_x(axis)
+            plain_log_ticks(axis.xaxis)
             axis.invert_xaxis()
 
 
@@ -248,7 +249,7 @@ def rate_period_figure(histories, names=None, gap=False):
                   va="bottom", transform=axis.get_xaxis_transform(), color="0.35")  # fmt: skip
     if len(histories) > 1:
         axis.legend(loc="best")
-    _plain_log_ticks_x(axis)
+    plain_log_ticks(axis.xaxis)
     return figure
 
 
@@ -256,11 +257,3 @@ def _total_overflow(history):
     total = sum(history.columns.get(f"overflow_{c}", 0.0) for c in "AB") + 0.0 * history["time"]
     floor = min(RATE_FLOOR * max(total.max(), 1e-300), RATE_OF_INTEREST)
     return np.where(total > floor, total, np.nan)
-
-
-def _plain_log_ticks_x(axis):
-    from matplotlib.ticker import FuncFormatter, LogLocator, NullFormatter
-
-    axis.xaxis.set_major_locator(LogLocator(subs=(1.0, 1.5, 2.0, 3.0, 5.0, 7.0)))
-    axis.xaxis.set_major_formatter(FuncFormatter(lambda value, _: f"{value:g}"))
-    axis.xaxis.set_minor_formatter(NullFormatter())

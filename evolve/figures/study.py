@@ -3,7 +3,7 @@
 import numpy as np
 
 from evolve.errors import ConfigError
-from evolve.figures.style import DASHES, SERIES, new_figure, styled
+from evolve.figures.style import DASHES, SERIES, new_figure, plain_log_ticks, styled
 
 
 @styled
@@ -68,6 +68,7 @@ def _scaled(axis, scale, which):
         getattr(axis, f"set_{which}ticks")(x, [str(word) for word in scale.values])
     elif len(x) > 2 and (x > 0.0).all() and np.allclose(np.diff(np.log(x)), np.log(x[1] / x[0])):
         getattr(axis, f"set_{which}scale")("log")
+        plain_log_ticks(getattr(axis, f"{which}axis"))
     getattr(axis, f"set_{which}label")(_label(scale.key, scale.unit))
 
 

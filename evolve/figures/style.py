@@ -86,3 +86,12 @@ def save_figure(figure, path):
     with matplotlib().rc_context(SETTINGS):
         figure.savefig(part, format=path.suffix[1:], dpi=200, metadata=metadata)
     os.replace(part, path)
+
+
+def plain_log_ticks(axis):
+    """A logarithmic x or y axis in plain numbers: nobody reads 10^0.5 hours."""
+    from matplotlib.ticker import FuncFormatter, LogLocator, NullFormatter
+
+    axis.set_major_locator(LogLocator(subs=(1.0, 1.5, 2.0, 3.0, 5.0, 7.0)))
+    axis.set_major_formatter(FuncFormatter(lambda value, _: f"{value:g}"))
+    axis.set_minor_formatter(NullFormatter())
