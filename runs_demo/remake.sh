@@ -12,6 +12,6 @@ evolve run ../configs/neutron_star_expelling.toml -o expelling.h5 --replace > /d
 evolve compare conservative.h5 expelling.h5 --on mass_A > conservative_or_expelling.txt
 evolve draw conservative.h5 expelling.h5 -o conservative_or_expelling.png --replace
 evolve contact ../configs/red_dwarf.toml > contact.txt
-evolve sweep ../configs/study_contact_time.toml -o contact_time.h5 --replace > contact_time.txt 2> /dev/null
+evolve sweep ../configs/studies/contact_time.toml -o contact_time.h5 --replace > contact_time.txt 2> /dev/null
 evolve draw contact_time.h5 -o contact_time.png --replace
 rm conservative.h5 expelling.h5
