@@ -5,9 +5,11 @@ and evaluates every event function where the quantities are known already; so th
 are looked for here, where each accepted step is recorded, on the same interpolant.
 """
 
+from math import isfinite
+
 import numpy as np
 
-from evolve.integrate.solver import IMPLICIT, CoreEquations, Halt, all_finite, guarded, tolerances
+from evolve.integrate.solver import IMPLICIT, CoreEquations, Halt, guarded, tolerances
 
 FINEST = 1e-12
 """No tolerance is sharpened below this."""
@@ -51,6 +53,8 @@ class Course:
         self.noted, self.fired, self.halt = [], None, None
         self.first_row = len(self.recorder)
         self.spent = run.evaluations
+        core = run.pair.layout.core
+        self.radius_slots = [n for n, name in enumerate(core) if name.startswith("ln_")]
         self.values = self._readings(stretch.quantities(stretch.start, stretch.state))
 
     def follow(self, bound):
@@ -92,9 +96,10 @@ class Course:
     def accept(self, solver):
         """Record an accepted step and note its events; true if the stretch ends here."""
         x, state = solver.t, solver.y
-        if not all_finite(state):
+        values = state.tolist()
+        if not isfinite(sum(values)):
             self.halt = Halt("non_finite", "the state became NaN or infinite")
-        elif bad := self._out_of_bounds(state):
+        elif bad := self._out_of_bounds(values):
             self.halt = Halt("domain", f"{bad} left the range in which the equations hold")
         if self.halt:
             return True
@@ -122,12 +127,13 @@ class Course:
         readings = self.run.pair.gauges(quantities)
         return [readings[watch.gauge] - watch.level for watch in self.watches]
 
-    def _out_of_bounds(self, state):
-        if not (state[:3] > 0.0).all():
+    def _out_of_bounds(self, values):
+        """What has left the range in which the equations hold (their head bounds trials)."""
+        if not (values[0] > 0.0 and values[1] > 0.0 and values[2] > 0.0):
             return "a mass or the angular momentum"
-        for slot, name in enumerate(self.run.pair.layout.core[3:], 3):
-            if name.startswith("ln_") and not -20.0 < state[slot] < 15.0:
-                return name
+        for slot in self.radius_slots:
+            if not -20.0 < values[slot] < 15.0:
+                return self.run.pair.layout.core[slot]
         return ""
 
     # Events ------------------------------------------------------------------------------

@@ -1,6 +1,5 @@
 """One stretch of integration with solve_ivp: a guarded method, its tolerances, its Jacobian."""
 
-from math import isfinite
 from typing import NamedTuple
 
 import numpy as np
@@ -101,8 +100,3 @@ class CoreEquations:
             matrix[:, slot] = (np.array(self._function(x, shifted)) - base) / step
             shifted[slot] = state[slot]
         return matrix
-
-
-def all_finite(state):
-    """True if no slot is NaN or infinite; a sum is enough to tell, and cheap."""
-    return isfinite(float(state.sum()))
