@@ -14,10 +14,10 @@ _PLACES = {
     "read_config": "evolve.config",
     "History": "evolve.history",
     "open_history": "evolve.archive",
+    "run_many": "evolve.studies.many",
     "EvolveError": "evolve.errors",
     "ConfigError": "evolve.errors",
     "DomainError": "evolve.errors",
-    "IntegrationError": "evolve.errors",
     "ArchiveError": "evolve.errors",
     "MissingExtra": "evolve.errors",
 }

@@ -27,14 +27,6 @@ class DomainError(EvolveError):
     """A law or a star was asked outside the range in which it means anything."""
 
 
-class IntegrationError(EvolveError):
-    """An integration failed; `history` holds what was computed before it did."""
-
-    def __init__(self, message, history=None):
-        super().__init__(message)
-        self.history = history
-
-
 class ArchiveError(EvolveError):
     """A file is damaged, foreign or of a newer layout, or the machine cannot write it."""
 

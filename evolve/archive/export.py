@@ -7,8 +7,6 @@ from evolve.errors import ConfigError
 from evolve.history.columns import COLUMNS
 from evolve.history.epoch import sampled
 
-FORMATS = ("csv", "ecsv")
-
 
 def table_text(history, columns=None, units=None, every=None, rows=None, on="time", form="csv"):
     """A table of a history.

@@ -10,8 +10,6 @@ DASHES = ("-", (0, (5, 1.5)), (0, (1, 1)), (0, (5, 1, 1, 1)), (0, (3, 1, 1, 1, 1
 REGIME = {"detached": "#FFFFFF", "overflow_A": "#FBE6D9", "overflow_B": "#DCEAF5", "inspiral": "#EEEEEE"}
 REGIME_WORDS = {"detached": "detached", "overflow_A": "overflow of A", "overflow_B": "overflow of B",
                 "inspiral": "inspiral"}  # fmt: skip
-COLUMN_WIDTH = 3.5
-"""Width of one journal column [inch]."""
 SETTINGS = {
     "font.size": 8.0,
     "axes.labelsize": 8.0,
