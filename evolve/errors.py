@@ -34,10 +34,17 @@ class ArchiveError(EvolveError):
 
 
 class MissingExtra(EvolveError):
-    """A package of an optional extra is needed and not installed."""
+    """A package of an optional extra is needed and not installed.
+
+    Parameters
+    ----------
+    package : str
+        As pip knows it.
+    extra : str
+    """
 
     def __init__(self, package, extra):
         super().__init__(
-            f"{package} is needed for this and is not installed: "
-            f"python -m pip install 'evolve[{extra}]'"
+            f"{package} is needed for this (extra `{extra}`) and is not installed: "
+            f"python -m pip install '{package}'"
         )

@@ -133,7 +133,7 @@ def _client(address):
     try:
         from distributed import Client
     except ImportError as error:
-        raise MissingExtra("dask.distributed", "cluster") from error
+        raise MissingExtra("dask[distributed]", "cluster") from error
     return Client(address)
 
 

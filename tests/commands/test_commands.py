@@ -160,5 +160,5 @@ def test_missing_extra_gives_one_sentence(folder):
         "from evolve.commands.main import main; sys.exit(main(['draw', 'red_dwarf.h5']))"
     )
     done = subprocess.run([sys.executable, "-c", code], cwd=folder, capture_output=True, text=True)
-    assert done.returncode == 1 and "evolve[figures]" in done.stderr
+    assert done.returncode == 1 and "pip install 'matplotlib'" in done.stderr and "figures" in done.stderr
     assert "Traceback" not in done.stderr
