@@ -11,7 +11,12 @@ def arguments(parser):
     """The command's own arguments."""
     parser.add_argument("files", nargs="+", metavar="FILE.h5", help="several are overlaid")
     parser.add_argument(
-        "--figure", choices=("history", "rate-period"), default="history", help="which (history)"
+        "--figure", choices=("history", "rate-period", "ledger", "pair"), default="history",
+        help="which (history)",
+    )
+    parser.add_argument(
+        "--at", action="append", default=[], metavar="EPOCH",
+        help='of the pair: an event, "period=4 h" ...; may be repeated',
     )
     parser.add_argument(
         "--on", default="time", metavar="COLUMN",
@@ -50,7 +55,24 @@ def run(arguments):
     names = [Path(path).stem for path in arguments.files]
     if arguments.figure == "history":
         figure = history_figure(histories, names, arguments.on)
-    else:
+    elif arguments.figure == "rate-period":
         figure = rate_period_figure(histories, names, arguments.gap)
+    else:
+        figure = _of_one(histories, arguments)
     save_figure(figure, output)
     return Answer([f"drawn to {output}"], {"file": str(output)})
+
+
+def _of_one(histories, arguments):
+    """A figure that shows a single history."""
+    from evolve.commands.show import epoch_of
+    from evolve.errors import ConfigError
+    from evolve.figures.ledger import ledger_figure
+    from evolve.figures.pair import pair_figure
+
+    if len(histories) > 1:
+        raise ConfigError(f"--figure {arguments.figure} shows one history; give one archive")
+    if arguments.figure == "ledger":
+        return ledger_figure(histories[0])
+    plain = [text if "=" not in text else epoch_of(histories[0], text) for text in arguments.at]
+    return pair_figure(histories[0], plain or ("start", "end"))
