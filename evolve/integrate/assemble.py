@@ -62,7 +62,7 @@ def _columns(run):
 
 
 def _absent(name):
-    return 0.0 if name.startswith((*FLOW_COLUMNS, "torque", "eccentricity")) else np.nan
+    return 0.0 if name.startswith((*FLOW_COLUMNS, "torque", "eccentricity", "core_mass")) else np.nan
 
 
 def _donor(run, length):

@@ -99,9 +99,6 @@ class Course:
         values = state.tolist()
         if not isfinite(sum(values)):
             self.halt = Halt("non_finite", "the state became NaN or infinite")
-        elif bad := self._out_of_bounds(values):
-            self.halt = Halt("domain", f"{bad} left the range in which the equations hold")
-        if self.halt:
             return True
         stretch, run = self.stretch, self.run
         time, quantities = stretch.time(x, state), stretch.quantities(x, state)
@@ -115,7 +112,10 @@ class Course:
         if crossed:
             self._cross(solver, before, crossed)
         run.steps += 1
-        if self.fired:
+        if self.fired:  # what ends the stretch on the way to a state out of bounds comes first
+            return True
+        if bad := self._out_of_bounds(values):
+            self.halt = Halt("domain", f"{bad} left the range in which the equations hold")
             return True
         self.recorder.add(time, stretch.kept(state), quantities)
         if run.progress:
@@ -171,4 +171,9 @@ class Course:
         if start * end > 0.0 or end == 0.0:
             return high
         digits = 4e-16 * max(abs(low), abs(high))
-        return brentq(g, low, high, xtol=max(digits, 1e-12 * (high - low)), rtol=1e-15)
+        width = max(digits, 1e-12 * (high - low))
+        x = brentq(g, low, high, xtol=width, rtol=1e-15)
+        # Past the zero, not before it: a gauge that jumps would be met there again.
+        while g(x) * start > 0.0 and x < high:
+            x = min(x + width, high)
+        return x

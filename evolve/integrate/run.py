@@ -117,12 +117,12 @@ class Run:
         self._mark("start")
         self._wake()
         while not self.outcome:
-            self._settle_at_once()
-            if self.outcome:
-                break
-            if self.opening_event:
-                self._open(self.opening_event)
             try:
+                self._settle_at_once()
+                if self.outcome:
+                    break
+                if self.opening_event:
+                    self._open(self.opening_event)
                 self._stretch()
             except KeyboardInterrupt:
                 self._finish("interrupted")
@@ -275,7 +275,9 @@ class Run:
     def _unstable(self, c):
         """Unstable overflow: the history stops, goes on, or goes through a common envelope."""
         envelope = self.pair.config.values["envelope"]
-        if envelope["follows"] == "stop":
+        if envelope["follows"] == "stop" or (
+            envelope["follows"] == "continue" and self.law == "locked"
+        ):  # R = R_L cannot be imposed on an unstable donor
             return self._finish("unstable_overflow")
         if envelope["follows"] == "continue":
             self.ignored.add(c)

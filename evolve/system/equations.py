@@ -58,6 +58,7 @@ def _function(plan, slots, name):
         *_torque_laws(plan),
         *_both(_wind, plan),
         *_both(_ceiling, plan),
+        *_both(_specific_of_captured, plan),
         *_both(_transfer, plan, full),
         *_sums(plan),
         *(_return_quantities(plan, slots) if full else _return_rates(plan, slots)),
@@ -188,7 +189,7 @@ def _transfer(plan, c, full):
     if not (part.overflows or part.capture):
         return []
     if not part.overflows:
-        return _specific(plan, c) + _balance(plan, c)
+        return _balance(plan, c)
     lines = [f"excess_{c} = " + _excess(plan, c)] * full
     o = OTHER[c]
     flowing = _specific(plan, c) * (not part.capture)
@@ -203,7 +204,7 @@ def _transfer(plan, c, full):
         idle.append(f"zeta_lobe_{c} = nan")
         idle += [f"drive_{c} = 0.0"] * (plan.overflow == "locked")
     if part.capture:
-        lines += _specific(plan, c) + _either(c, flowing, idle) + _balance(plan, c)
+        lines += _either(c, flowing, idle) + _balance(plan, c)
         return lines + ([f"if flow_{c}:", *indented(after)] if after else [])
     idle.append(f"accepted_{o} = expelled_{o} = torque_expelled_{c} = 0.0")
     idle += [f"torque_consequential_{c} = 0.0"] * plan.consequential
@@ -219,6 +220,11 @@ def _excess(plan, c):
         call = f"overflow_excess(star_{c}, star_{OTHER[c]}, orbit, overflow_keys)"
         return f"{call} if radius_{c} > 0.5 * lobe_{c} else -1e9"
     return f"log(radius_{c} / lobe_{c})"
+
+
+def _specific_of_captured(plan, c):
+    """For what is captured, needed before either component's overflow is solved for."""
+    return _specific(plan, c) if plan.components[c].capture else []
 
 
 def _specific(plan, c):

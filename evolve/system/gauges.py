@@ -57,7 +57,7 @@ def gauge_expressions(plan):
         other = plan.components["B" if c == "A" else "A"]
         if plan.components[c].ceiling and (other.overflows or other.capture):
             gauges[f"ceiling_{c}"] = (
-                f"log(max(accepted_{c}, 1e-300) / max(ceiling_{c}, 1e-300))"
+                f"log(max(accepted_{c}, 1e-300)) - log(max(ceiling_{c}, 1e-300))"
             )
     spins = [f"spin_momentum_{c} / spin_{c}" for c in plan.order if plan.components[c].tides]
     if spins:  # moments of inertia of the stars whose spins are followed

@@ -10,8 +10,8 @@ from evolve.errors import ConfigError
 from evolve.integrate.outcomes import GOOD
 
 SEED = 20260117
-COUNT = 200
-CHUNKS = 20
+COUNT = 500
+CHUNKS = 25
 MAY_BE_NAN = ("zeta_lobe", "zeta_star", "transfer_time", "thermal_time", "disc_critical_rate",
               "wave_strain")  # fmt: skip
 """Columns of the donor, the disc or the waves that have no value where those are not."""
@@ -23,7 +23,10 @@ def log_uniform(rng, low, high):
 
 
 def random_star(rng):
-    model = rng.choice(["dwarf", "dwarf", "white-dwarf", "compact", "power-law"])
+    model = rng.choice(["dwarf", "dwarf", "white-dwarf", "compact", "power-law", "helium-star",
+                        "main-sequence", "main-sequence", "giant", "expanding"])  # fmt: skip
+    if model in ("helium-star", "main-sequence", "giant", "expanding"):
+        return random_evolving(rng, model)
     if model == "dwarf":
         return {"star": model, "mass": rng.uniform(0.02, 0.98),
                 "inflation": rng.choice([0.0, rng.uniform(0.0, 0.2)])}  # fmt: skip
@@ -36,6 +39,44 @@ def random_star(rng):
         return {"star": model, "kind": kind, "mass": mass}
     return {"star": model, "mass": log_uniform(rng, 0.1, 20.0),
             "radius": log_uniform(rng, 0.01, 50.0), "exponent": rng.uniform(-1.0, 3.0)}  # fmt: skip
+
+
+def random_evolving(rng, model):
+    if model == "helium-star":
+        half = rng.random() < 0.3
+        return {"star": model, "mass": rng.uniform(0.02, 0.15) if half else rng.uniform(0.35, 4.5),
+                "semi_degenerate": str(half).lower()}  # fmt: skip
+    if model == "main-sequence":
+        return {"star": model, "mass": log_uniform(rng, 0.15, 60.0), "burnt": rng.uniform(0.0, 0.95)}
+    if model == "giant":
+        core = rng.uniform(0.165, 0.44)
+        return {"star": model, "core_mass": core, "mass": rng.uniform(core + 0.05, 2.2),
+                "relation": rng.choice(["webbink-1983", "rappaport-1995"])}  # fmt: skip
+    return {"star": model, "mass": log_uniform(rng, 0.2, 20.0), "radius": log_uniform(rng, 0.1, 20.0),
+            "growth_time": f"{log_uniform(rng, 1e-3, 10.0)} Gyr", "zeta_ad": rng.uniform(-0.3, 4.0)}  # fmt: skip
+
+
+def random_extras(rng, config):
+    """Winds, ceilings, tides, what follows an unstable overflow, limits, an observer."""
+    for c in "AB":
+        if rng.random() < 0.25:
+            law = rng.choice(["reimers-1975", "nieuwenhuijzen-dejager-1990", "vink-2001", "constant"])
+            wind = {"law": law, "capture": rng.choice(["none", "bondi-hoyle", rng.random()])}
+            if law == "constant":
+                wind["rate"] = log_uniform(rng, 1e-14, 1e-6)
+            if config[c]["star"] not in ("compact", "white-dwarf") or law == "constant":
+                config.setdefault("wind", {})[c] = wind
+        if rng.random() < 0.15 and config[c]["star"] not in ("compact", "white-dwarf"):
+            config.setdefault("tides", {})[c] = {"law": "hut-1981", "k_over_t": rng.choice(
+                ["auto", log_uniform(rng, 1e-4, 10.0)])}  # fmt: skip
+    if rng.random() < 0.4:
+        config["acceptance"]["ceiling"] = rng.choice(
+            ["eddington", "hydrogen-burning-band", log_uniform(rng, 1e-12, 1e-5)])  # fmt: skip
+    if rng.random() < 0.4:
+        config["envelope"] = {"follows": rng.choice(["common-envelope", "continue"]),
+                              "efficiency": log_uniform(rng, 0.1, 5.0)}  # fmt: skip
+    if rng.random() < 0.2:
+        config["observer"] = {"distance": "1 kpc", "inclination": f"{rng.uniform(0, 180)} deg"}
 
 
 def random_braking(rng):
@@ -82,6 +123,7 @@ def random_config(rng):
         config["braking"] = random_braking(rng)
     if rng.random() < 0.1:
         config["waves"] = {"law": "off"}
+    random_extras(rng, config)
     for key, value in (("period_below", "1 h"), ("period_above", "100 h"), ("rate_below", 1e-11)):
         if rng.random() < 0.1:
             config["end"][key] = value
@@ -95,7 +137,7 @@ def check(history):
     for name, values in history.columns.items():
         if name not in MAY_BE_NAN:
             assert np.isfinite(values).all(), name
-    for name in ("overflow_A", "overflow_B", "mass_A", "mass_B", "separation"):
+    for name in ("overflow_A", "overflow_B", "wind_A", "captured_B", "mass_A", "mass_B", "separation"):
         if name in history.columns:
             assert (history[name] >= 0.0).all(), name
     assert abs(history.ledger.residuals["angular_momentum"]) < 1e-6
