@@ -173,7 +173,7 @@ class Course:
         digits = 4e-16 * max(abs(low), abs(high))
         width = max(digits, 1e-12 * (high - low))
         x = brentq(g, low, high, xtol=width, rtol=1e-15)
-        # Past the zero, not before it: a gauge that jumps would be met there again.
-        while g(x) * start > 0.0 and x < high:
+        # A gauge that jumps would be met again from before its jump: step past it.
+        while abs(g(x)) == 0.5 and g(x) * start > 0.0 and x < high:
             x = min(x + width, high)
         return x
