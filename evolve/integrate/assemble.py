@@ -137,7 +137,7 @@ def _balance_at(run, row):
 def _statistics(run):
     numerics = run.numerics
     return {
-        "engine": "compiled" if numerics["engine"] == "compiled" else "plain",
+        "engine": "plain",
         "method": numerics["method"],
         "rtol": numerics["rtol"],
         "steps": run.steps,
