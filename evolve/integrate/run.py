@@ -12,7 +12,7 @@ from evolve.integrate.course import Course
 from evolve.integrate.outcomes import sentence
 from evolve.integrate.recorder import Recorder
 from evolve.integrate.stretch import InspiralStretch, TimeStretch
-from evolve.integrate.watches import CONTACT_MARGIN, WAKE, watches_for
+from evolve.integrate.watches import CONTACT_MARGIN, WAKE, noted, watches_for
 from evolve.system.layout import OTHER
 from evolve.system.pair import Pair
 
@@ -237,6 +237,9 @@ class Run:
             if self.law == "atmosphere" and self.pair.models[c].overflows:
                 self._switch(f"flow_{c}", getattr(quantities, f"excess_{c}") > WAKE)
 
+    def _on_circularised(self, c):
+        self._set("eccentricity_state", 0.0)
+
     def _on_detachment(self, c):
         self.in_contact[c] = False
         if self.law in ("polytrope", "locked"):
@@ -293,6 +296,7 @@ class Run:
         if after is None:
             self._mark("merger", "", len(self.recorder) - 1)
             return self._finish("merger")
+        self._mark("remnant_formed", c, len(self.recorder) - 1)
         self._become(c, after)
         self.opening_event = self.opening_event or "common_envelope"
         return None
@@ -361,15 +365,20 @@ class Run:
         quantities = self.now()
         row = self.recorder.add(self.time, self.state, quantities)
         self.time = self.recorder.rows[row].time
-        if self.openings and self.openings[-1].row < row - 1 and self.acts[-1].row < row:
-            gauge = self.pair.layout.gauges.index("period_rate")
-            before = self.pair.gauges(self.recorder.rows[row - 1].quantities)[gauge]
-            after = self.pair.gauges(quantities)[gauge]
-            if before < 0.0 < after:
-                self._mark("period_minimum", "", row)
-            elif after < 0.0 < before:
-                self._mark("period_maximum", "", row)
+        if self.openings and self.acts[-1].row < row:
+            self._note_jumps(row, quantities)
         self.openings.append(Opening(row, self.regime, event))
+
+    def _note_jumps(self, row, quantities):
+        """Events that change nothing, met where the equations jump from one row to the next."""
+        before = self.pair.gauges(self.recorder.rows[row - 1].quantities)
+        after = self.pair.gauges(quantities)
+        for watch in noted(self):
+            if watch.name.startswith("period") and self.openings[-1].row == row - 1:
+                continue  # nothing has happened yet: a flow joins the equations
+            old, new = before[watch.gauge] - watch.level, after[watch.gauge] - watch.level
+            if old * new < 0.0 and watch.direction * (new - old) >= 0.0:
+                self._mark(watch.name, watch.component, row)
 
     def _finish(self, outcome, detail=""):
         if self.outcome:
