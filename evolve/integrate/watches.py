@@ -109,7 +109,7 @@ def _lobe_watches(run, c, watch):
         ]
     gone = watch("detachment", c, f"rate_{c}", threshold - CONTACT_MARGIN, -1)
     if law == "polytrope":
-        gone = watch("detachment", c, f"fill_{c}", 0.0, -1)
+        gone = watch("detachment", c, f"fill_{c}", -CONTACT_MARGIN, -1)
     found = [
         gone,
         watch("unstable_overflow", c, f"stability_{c}", 0.0, -1, terminal=False, at_once=False),
