@@ -75,7 +75,7 @@ def quantity(value, unit, digits=4):
         value, unit = value * conversion_factor(unit, "yr"), "yr"
     if unit == "yr" and abs(value) < NO_TIME:
         return "0 yr"
-    return human(value, dimension_of(unit), digits)
+    return human(value, dimension_of(unit), digits).replace(" / ", "/")
 
 
 def of_column(column, value, digits=4):

@@ -48,7 +48,7 @@ class Becoming(NamedTuple):
 
 
 def remnant(values, c, q):
-    """A giant that has lost its envelope becomes a white dwarf of its core's mass.
+    """A star that has lost its envelope becomes what its core is: see `_core_star`.
 
     The last 0.01 solar masses leave as a fast wind: a M stays (Jeans mode), and the pair is
     detached.
@@ -56,9 +56,14 @@ def remnant(values, c, q):
     core = getattr(q, f"core_mass_{c}")
     other = getattr(q, f"mass_{OTHER[c]}")
     total = q.mass_A + q.mass_B
-    return Becoming(
-        _bare(values, "white-dwarf", core), core, q.separation * total / (core + other), 0.0
-    )
+    separation = q.separation * total / (core + other)
+    return Becoming(_core_star(values, core), core, separation, q.eccentricity)
+
+
+def _core_star(values, core):
+    """A bare core: a white dwarf, or if heavy and not known to be degenerate a helium star."""
+    burns = core > HELIUM_CORE and values["star"] == "track"
+    return _bare(values, "helium-star" if burns else "white-dwarf", core, semi_degenerate="false")
 
 
 def _bare(values, star, mass, **more):
@@ -81,9 +86,8 @@ def common_envelope(values, c, q, efficiency, binding, radius_other):
     separation = webbink_1984(
         mass, core, other, getattr(q, f"lobe_{c}"), q.separation, efficiency, binding
     )
-    star = "helium-star" if core > HELIUM_CORE and values["star"] == "track" else "white-dwarf"
-    new = _bare(values, star, core, semi_degenerate="false")
-    model = MODELS[star]
+    new = _core_star(values, core)
+    model = MODELS[new["star"]]
     radius = model.structure(core, 0.0, 0.0, model.prepare(core, new)).radius
     if not survives(core, radius, other, radius_other, separation):
         return None

@@ -162,13 +162,19 @@ def _accretor_kind(pair, c):
 
 def _accretion_luminosity(pair, q):
     """Light of what reaches an accretor [solLum]: G m mdot/R with a surface, eta mdot c2 of a
-    black hole."""
+    black hole. Beyond an Eddington ceiling the rest is driven off before it falls in.
+    """
     power = np.zeros_like(q["mass_A"])
     for c in "AB":
         o = OTHER[c]
         reaching = q.get(f"overflow_{o}", 0.0) + q.get(f"captured_{o}", 0.0)
-        if _accretor_kind(pair, c) == "black-hole":
-            power += radiative_efficiency(pair.config.values[c].get("spin") or 0.0) * reaching * C**2
+        hole = _accretor_kind(pair, c) == "black-hole"
+        eta = radiative_efficiency(pair.config.values[c].get("spin") or 0.0) if hole else 0.0
+        ceiling = pair.laws.ceiling[c]
+        if ceiling and ceiling.name == "eddington" and f"ceiling_{c}" in q:
+            reaching = np.minimum(reaching, q[f"ceiling_{c}"] / (1.0 - eta))
+        if hole:
+            power += eta * reaching * C**2
         else:
             surface = np.where(q[f"radius_{c}"] > 0.0, q[f"radius_{c}"], np.inf)
             power += G * q[f"mass_{c}"] * reaching / surface

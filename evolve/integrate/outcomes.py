@@ -11,8 +11,8 @@ SENTENCES = {
     "unstable_overflow": "The overflow became dynamically unstable.",
     "merger": "The pair merged.",
     "unbound": "The pair is no longer bound.",
-    "table_end": "The table of a star ends here.",
-    "validity": "A star left the range in which its model means anything.",
+    "table_end": "A star reached the end of its track.",
+    "validity": "A star reached the end of what its model describes.",
     "step_limit": "The limit of evaluations was reached; raise numerics.max_evaluations.",
     "non_finite": "The state stopped being finite.",
     "domain": "The state left the domain of the equations.",
@@ -29,7 +29,8 @@ GOOD = (
 
 def sentence(outcome, detail=""):
     """What an end means, for people, with the detail that is known."""
-    return SENTENCES[outcome] + (f" ({detail})" if detail else "")
+    said = SENTENCES[outcome]
+    return f"{said.rstrip('.')} ({detail})." if detail else said
 
 
 def exit_status(outcome):

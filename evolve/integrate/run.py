@@ -18,8 +18,8 @@ from evolve.system.pair import Pair
 
 DETAILS = {
     "burning_ends": "the main sequence of {} is over",
-    "validity": "the mass or the core of {}",
-    "table_end": "component {}",
+    "validity": "the mass or the core mass of {} leaves its range",
+    "table_end": "the last row of the table of {}",
 }
 """What more there is to say of an end than its name does."""
 CHATTER = 25
@@ -371,11 +371,14 @@ class Run:
 
     def _note_jumps(self, row, quantities):
         """Events that change nothing, met where the equations jump from one row to the next."""
-        before = self.pair.gauges(self.recorder.rows[row - 1].quantities)
-        after = self.pair.gauges(quantities)
+        earlier = self.recorder.rows[row - 1].quantities
+        before, after = self.pair.gauges(earlier), self.pair.gauges(quantities)
+        # no extreme of the period: a flow joins at the very start, or the period itself jumps
+        jumps = abs(quantities.omega / earlier.omega - 1.0) > 1e-9
+        no_extreme = jumps or self.openings[-1].row == row - 1
         for watch in noted(self):
-            if watch.name.startswith("period") and self.openings[-1].row == row - 1:
-                continue  # nothing has happened yet: a flow joins the equations
+            if no_extreme and watch.gauge == self.pair.layout.gauges.index("period_rate"):
+                continue
             old, new = before[watch.gauge] - watch.level, after[watch.gauge] - watch.level
             if old * new < 0.0 and watch.direction * (new - old) >= 0.0:
                 self._mark(watch.name, watch.component, row)

@@ -141,8 +141,11 @@ def _life_watches(run, c, watch):
     kick = run.pair.config.values["kick"][c]["time"]
     if kick and c not in run.kicked:
         found.append(watch("kick", c, "time", kick, +1))
-    if model.phase == "core":
-        found.append(watch("envelope_exhausted", c, f"envelope_{c}", THINNEST, -1))
+    if f"envelope_{c}" in run.pair.layout.gauges:
+        always = model.phase == "core"  # a track may be that of a bare core from the start
+        found.append(
+            watch("envelope_exhausted", c, f"envelope_{c}", THINNEST, -1, at_once=always)
+        )
     kind = run.pair.config.values[c].get("kind")
     limit = {"neutron-star": "neutron_star"}.get(kind)
     if model.kind == "white-dwarf":

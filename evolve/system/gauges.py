@@ -34,36 +34,9 @@ def gauge_expressions(plan):
     """
     gauges = {"time": "time"}
     for c in plan.order:
-        gauges[f"mass_{c}"] = f"log(mass_{c})"
-        gauges[f"fill_{c}"] = f"log(max(radius_{c}, 1e-99) / lobe_{c})"
-        if plan.components[c].relaxing:
-            gauges[f"lag_{c}"] = f"log(radius_{c} / equilibrium_{c})"
-        if plan.components[c].phase:
-            gauges[f"phase_{c}"] = f"phase_{c}"
-            gauges[f"convective_{c}"] = f"convective_{c}"
-        if plan.components[c].phase == "core":
-            gauges[f"envelope_{c}"] = f"mass_{c} - core_mass_{c}"
-        if not plan.components[c].overflows:
-            continue
-        gauges[f"excess_{c}"] = f"excess_{c}"
-        gauges[f"rate_{c}"] = f"log(max(overflow_{c}, 1e-300))"
-        if plan.overflow == "locked":
-            gauges[f"drive_{c}"] = f"drive_{c}"
-        gauges[f"stability_{c}"] = f"zeta_{c} - zeta_lobe_{c}"
-        gauges[f"runaway_{c}"] = (
-            f"max(log(radius_{c} / lobe_{c} / {RUNAWAY_FILL}), log(max(overflow_{c}, 1e-300)"
-            f" * {RUNAWAY_DYNAMICAL_TIMES} * sqrt(radius_{c}**3 / (G * mass_{c})) / mass_{c}))"
-        )
+        gauges |= _star_gauges(plan, c)
     for c in plan.order:
-        other = plan.components["B" if c == "A" else "A"]
-        if plan.components[c].ceiling and (other.overflows or other.capture):
-            gauges[f"ceiling_{c}"] = (
-                f"log(max(accepted_{c}, 1e-300)) - log(max(ceiling_{c}, 1e-300))"
-            )
-            if plan.components[c].ceiling == "band":
-                gauges[f"burning_{c}"] = (
-                    f"log(max(accepted_{c} + expelled_{c}, 1e-300)) - log(max(edge_{c}, 1e-300))"
-                )
+        gauges |= _accretor_gauges(plan, c)
     if plan.eccentric:
         gauges["eccentricity"] = "log(max(eccentricity, 1e-300))"
     spins = [f"spin_momentum_{c} / spin_{c}" for c in plan.order if plan.components[c].tides]
@@ -79,6 +52,49 @@ def gauge_expressions(plan):
         "1.5 * separation_rate - 0.5 * (mass_rate_A + mass_rate_B) / (mass_A + mass_B)"
     )
     gauges["mass_ratio"] = "log(mass_A / mass_B)"
+    return gauges
+
+
+def _star_gauges(plan, c):
+    """Of a star, its clock, its envelope, its lobe, its overflow."""
+    part, gauges = plan.components[c], {}
+    gauges[f"mass_{c}"] = f"log(mass_{c})"
+    gauges[f"fill_{c}"] = f"log(max(radius_{c}, 1e-99) / lobe_{c})"
+    if part.relaxing:
+        gauges[f"lag_{c}"] = f"log(radius_{c} / equilibrium_{c})"
+    if part.phase:
+        gauges[f"phase_{c}"] = f"phase_{c}"
+        gauges[f"convective_{c}"] = f"convective_{c}"
+    if part.phase == "core":
+        gauges[f"envelope_{c}"] = f"mass_{c} - core_mass_{c}"
+    elif part.phase == "age":  # of a table that may tell of no core
+        gauges[f"envelope_{c}"] = f"mass_{c} - core_mass_{c} if core_mass_{c} > 0.0 else 1e9"
+    if not part.overflows:
+        return gauges
+    gauges[f"excess_{c}"] = f"excess_{c}"
+    gauges[f"rate_{c}"] = f"log(max(overflow_{c}, 1e-300))"
+    if plan.overflow == "locked":
+        gauges[f"drive_{c}"] = f"drive_{c}"
+    gauges[f"stability_{c}"] = f"zeta_{c} - zeta_lobe_{c}"
+    gauges[f"runaway_{c}"] = (
+        f"max(log(radius_{c} / lobe_{c} / {RUNAWAY_FILL}), log(max(overflow_{c}, 1e-300)"
+        f" * {RUNAWAY_DYNAMICAL_TIMES} * sqrt(radius_{c}**3 / (G * mass_{c})) / mass_{c}))"
+    )
+    return gauges
+
+
+def _accretor_gauges(plan, c):
+    """Of what component c accepts, against its ceiling and the rate that burns steadily."""
+    part, other = plan.components[c], plan.components["B" if c == "A" else "A"]
+    if not (part.ceiling and (other.overflows or other.capture)):
+        return {}
+    gauges = {
+        f"ceiling_{c}": f"log(max(accepted_{c}, 1e-300)) - log(max(ceiling_{c}, 1e-300))"
+    }
+    if part.ceiling == "band":
+        gauges[f"burning_{c}"] = (
+            f"log(max(accepted_{c} + expelled_{c}, 1e-300)) - log(max(edge_{c}, 1e-300))"
+        )
     return gauges
 
 

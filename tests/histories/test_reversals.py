@@ -171,3 +171,26 @@ def test_a_common_envelope_without_room_is_a_merger():
     )  # fmt: skip
     assert history.outcome == "merger"
     assert [e.name for e in history.events][-3:] == ["common_envelope", "merger", "end"]
+
+
+@pytest.mark.parametrize(("core", "radius"), [(0.3, None), (0.8, 0.212 * 0.8**0.654)])
+def test_a_track_that_is_stripped_to_its_core_ends_as_that(tmp_path, core, radius):
+    """A star cannot be lighter than its core: when 0.01 Msun of envelope are left the core stands
+    alone, a white dwarf, or above 0.5 Msun a helium star of 0.212 m^0.654 Rsun."""
+    (tmp_path / "own.csv").write_text(
+        "age [Myr], mass [Msun], radius [Rsun], luminosity [Lsun], core_mass [Msun]\n"
+        + "".join(f"{100 * n}, 2.0, {2.0 * 1.6**n}, {20 * 1.3**n}, {core}\n" for n in range(12))
+    )
+    history = evolve.run(
+        {
+            "A": {"mass": 2.0, "star": "track", "table": str(tmp_path / "own.csv"), "zeta_ad": 4.0},
+            "B": {"mass": 1.8, **POINT}, "orbit": {"contact": True}, "end": {"time": "1000 Myr"},
+        }
+    )  # fmt: skip
+    assert (history["mass_A"] >= core * (1 - 1e-12)).all()
+    row = history.at("envelope_exhausted").row
+    assert history["mass_A"][row] == pytest.approx(core + 0.01, rel=1e-9)
+    assert history["mass_A"][-1] == pytest.approx(core, rel=1e-9)
+    assert history.outcome == "time" and history.chapters[-1].regime == "detached"
+    expected = radius or 0.05
+    assert history["radius_A"][-1] == pytest.approx(expected, rel=1e-6 if radius else 1.0)
