@@ -58,7 +58,8 @@ def columns_of(pair, time, q, donor):
         columns["total_angular_momentum"] = q["angular_momentum"] + sum(spins.values())
         columns.update({f"spin_{c}": q[f"spin_{c}"] for c in spins})
     flows = [f"{name}_{c}" for name in FLOW_COLUMNS for c in "AB"]
-    columns.update({name: q[name] for name in flows if name in q})
+    # at the root of a detachment the rate imposed is zero within rounding, of either sign
+    columns.update({name: np.maximum(q[name], 0.0) for name in flows if name in q})
     columns.update(_torque_columns(q))
     if any(parts[c].overflows for c in "AB"):
         columns.update(_stability_columns(pair, q, donor))

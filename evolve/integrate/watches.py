@@ -70,8 +70,7 @@ def watches_for(run):
         low, high = run.pair.mass_range(c)
         found.append(watch("validity", c, f"mass_{c}", log(low), -1, end="validity"))
         found.append(watch("validity", c, f"mass_{c}", log(high), +1, end="validity"))
-    if not any(run.pair.models[c].overflows for c in "AB"):
-        found.append(watch("merger", "", "merger", 0.0, +1, end="merger"))
+    found.append(watch("merger", "", "merger", 0.0, +1, end="merger"))
     if "eccentricity" in names and not run.inspiral:
         level = log(ROUND)
         found.append(watch("circularised", "", "eccentricity", level, -1, at_once=False))
@@ -106,6 +105,7 @@ def _lobe_watches(run, c, watch):
         return [
             watch("detachment", c, f"drive_{c}", 0.0, -1),
             watch("unstable_overflow", c, f"stability_{c}", 0.0, -1, end=end),
+            watch("runaway", c, f"runaway_{c}", 0.0, +1, end=end),
         ]
     gone = watch("detachment", c, f"rate_{c}", threshold - CONTACT_MARGIN, -1)
     if law == "polytrope":

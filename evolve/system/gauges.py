@@ -5,6 +5,8 @@ that they run plain and compiled like them; which of them are watched, at which 
 which direction, is the business of `evolve.integrate.watches`.
 """
 
+from math import log
+
 RUNAWAY_FILL = 1.1
 RUNAWAY_DYNAMICAL_TIMES = 100.0
 
@@ -29,7 +31,8 @@ def gauge_expressions(plan):
         accepts over its ceiling; burning_c: ln of what reaches c over the least that burns
         steadily there; eccentricity: ln e;
         darwin: positive when no stable synchronous orbit exists, (I_A + I_B) n > J/3 (Hut
-        1980, A&A 92, 167); merger: positive when a lobe or the last stable orbit is filled; log_period: ln P in
+        1980, A&A 92, 167); merger: positive when a star that cannot overflow fills its lobe, or
+        both meet the last stable orbit; log_period: ln P in
         yr; period_rate: d ln P/dt [1/yr]; mass_ratio: ln(m_A/m_B); time [yr].
     """
     gauges = {"time": "time"}
@@ -42,10 +45,13 @@ def gauge_expressions(plan):
     spins = [f"spin_momentum_{c} / spin_{c}" for c in plan.order if plan.components[c].tides]
     if spins:  # moments of inertia of the stars whose spins are followed
         gauges["darwin"] = f"log(3.0 * ({' + '.join(spins)}) * omega / angular_momentum)"
+    # a star that cannot overflow is swallowed when it fills its lobe
+    filled = "".join(
+        f"radius_{c} / lobe_{c}, " for c in plan.order if not plan.components[c].overflows
+    )
     periastron = "(separation * (1.0 - eccentricity))"
     gauges["merger"] = (
-        "max(radius_A / lobe_A, radius_B / lobe_B, "
-        f"6.0 * G * (mass_A + mass_B) / (C * C * {periastron})) - 1.0"
+        f"max({filled}6.0 * G * (mass_A + mass_B) / (C * C * {periastron}), 0.0) - 1.0"
     )
     gauges["log_period"] = f"log({6.283185307179586!r} / omega)"
     gauges["period_rate"] = (
@@ -76,9 +82,12 @@ def _star_gauges(plan, c):
     if plan.overflow == "locked":
         gauges[f"drive_{c}"] = f"drive_{c}"
     gauges[f"stability_{c}"] = f"zeta_{c} - zeta_lobe_{c}"
+    # ln of m/rate over 100 dynamical times, sqrt(R^3/(G m)), term by term: the product may underflow
+    radius = f"log(max(radius_{c}, 1e-99))"
     gauges[f"runaway_{c}"] = (
-        f"max(log(radius_{c} / lobe_{c} / {RUNAWAY_FILL}), log(max(overflow_{c}, 1e-300)"
-        f" * {RUNAWAY_DYNAMICAL_TIMES} * sqrt(radius_{c}**3 / (G * mass_{c})) / mass_{c}))"
+        f"max({radius} - log({RUNAWAY_FILL} * lobe_{c}), log(max(overflow_{c}, 1e-300))"
+        f" + {log(RUNAWAY_DYNAMICAL_TIMES)!r} + 1.5 * {radius}"
+        f" - 0.5 * log(G) - 1.5 * log(mass_{c}))"
     )
     return gauges
 

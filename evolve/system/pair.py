@@ -19,6 +19,9 @@ OVERFILL = 1e-3
 """A start overfilled by more than this share of the lobe is refused."""
 
 
+NOTHING_LEFT = 1e-6
+
+
 class Switches(NamedTuple):
     """What is on within one chapter: flow through each lobe, braking of each star."""
 
@@ -128,10 +131,14 @@ class Pair:
         return Switches(braking_A=on["A"], braking_B=on["B"])
 
     def mass_range(self, c):
-        """Masses within which the model of component c means anything [solMass]."""
+        """Masses within which the model of component c means anything [solMass].
+
+        A star that has lost all but a millionth of itself is none.
+        """
         low, high = self.models[c].mass_range
         keys = self.star_keys[c]
-        return getattr(keys, "mass_low", low), getattr(keys, "mass_high", high)
+        low = max(getattr(keys, "mass_low", low), NOTHING_LEFT * self.config.values[c]["mass"])
+        return low, getattr(keys, "mass_high", high)
 
     def gyration(self, c):
         """k2 of the moment of inertia k2 m R2 of component c."""

@@ -1,6 +1,8 @@
 """Random legal configs over the whole range of every key end with a stated reason."""
 
 import random
+import tempfile
+from pathlib import Path
 
 import numpy as np
 import pytest
@@ -12,6 +14,7 @@ from evolve.integrate.outcomes import GOOD
 SEED = 20260117
 COUNT = 500
 CHUNKS = 25
+TABLES = Path(tempfile.mkdtemp(prefix="random_tracks"))
 MAY_BE_NAN = ("zeta_lobe", "zeta_star", "transfer_time", "thermal_time", "disc_critical_rate",
               "wave_strain")  # fmt: skip
 """Columns of the donor, the disc or the waves that have no value where those are not."""
@@ -24,8 +27,8 @@ def log_uniform(rng, low, high):
 
 def random_star(rng):
     model = rng.choice(["dwarf", "dwarf", "white-dwarf", "compact", "power-law", "helium-star",
-                        "main-sequence", "main-sequence", "giant", "expanding"])  # fmt: skip
-    if model in ("helium-star", "main-sequence", "giant", "expanding"):
+                        "main-sequence", "main-sequence", "giant", "expanding", "track"])  # fmt: skip
+    if model in ("helium-star", "main-sequence", "giant", "expanding", "track"):
         return random_evolving(rng, model)
     if model == "dwarf":
         return {"star": model, "mass": rng.uniform(0.02, 0.98),
@@ -34,14 +37,36 @@ def random_star(rng):
         return {"star": model, "mass": rng.uniform(0.05, 1.37)}
     if model == "compact":
         kind = rng.choice(["neutron-star", "black-hole", "point-mass"])
+        spin = {"spin": rng.choice([0.0, rng.random()])} if kind == "black-hole" else {}
         mass = {"neutron-star": rng.uniform(1.1, 2.1), "black-hole": log_uniform(rng, 3.0, 100.0),
                 "point-mass": log_uniform(rng, 0.01, 100.0)}[kind]  # fmt: skip
-        return {"star": model, "kind": kind, "mass": mass}
+        return {"star": model, "kind": kind, "mass": mass, **spin}
     return {"star": model, "mass": log_uniform(rng, 0.1, 20.0),
             "radius": log_uniform(rng, 0.01, 50.0), "exponent": rng.uniform(-1.0, 3.0)}  # fmt: skip
 
 
+def random_track(rng):
+    """A star on a table that rises, with a core in half of the cases."""
+    rows, mass = rng.randint(4, 12), log_uniform(rng, 0.5, 20.0)
+    ages = np.cumsum([log_uniform(rng, 1e5, 1e9) for _ in range(rows)])
+    radii = log_uniform(rng, 0.2, 20.0) * np.cumprod([rng.uniform(0.8, 2.0) for _ in range(rows)])
+    table = {"age": ages, "mass": mass * np.linspace(1.0, rng.uniform(0.7, 1.0), rows), "radius": radii}
+    if rng.random() < 0.5:
+        table["core_mass"] = mass * np.linspace(0.05, rng.uniform(0.1, 0.6), rows)
+    if rng.random() < 0.5:
+        table["luminosity"] = log_uniform(rng, 0.1, 1e4) * np.linspace(1.0, 3.0, rows)
+    units = {"age": "yr", "mass": "Msun", "radius": "Rsun", "core_mass": "Msun", "luminosity": "Lsun"}
+    lines = [", ".join(f"{name} [{units[name]}]" for name in table)]
+    lines += [", ".join(repr(float(x)) for x in row) for row in zip(*table.values(), strict=True)]
+    path = TABLES / f"{abs(hash(tuple(lines))):x}.csv"
+    path.write_text("\n".join(lines) + "\n")
+    return {"star": "track", "mass": mass, "table": str(path), "zeta_ad": rng.uniform(-0.3, 4.0),
+            "zeta_eq": rng.choice([0.0, rng.uniform(-0.5, 1.0)])}  # fmt: skip
+
+
 def random_evolving(rng, model):
+    if model == "track":
+        return random_track(rng)
     if model == "helium-star":
         half = rng.random() < 0.3
         return {"star": model, "mass": rng.uniform(0.02, 0.15) if half else rng.uniform(0.35, 4.5),
@@ -75,8 +100,26 @@ def random_extras(rng, config):
     if rng.random() < 0.4:
         config["envelope"] = {"follows": rng.choice(["common-envelope", "continue"]),
                               "efficiency": log_uniform(rng, 0.1, 5.0)}  # fmt: skip
+    if rng.random() < 0.3:
+        config["limits"] = {"white_dwarf": rng.uniform(1.2, 1.44), "neutron_star": rng.uniform(2.0, 3.5)}
+    for c in "AB":
+        if rng.random() < 0.15:
+            config.setdefault("kick", {})[c] = random_kick(rng, config[c]["mass"])
     if rng.random() < 0.2:
         config["observer"] = {"distance": "1 kpc", "inclination": f"{rng.uniform(0, 180)} deg"}
+
+
+def random_kick(rng, mass):
+    """At a time, or when the star collapses if it does; with any direction."""
+    kick = {"speed": log_uniform(rng, 1.0, 500.0), "polar": f"{rng.uniform(0, 180)} deg",
+            "azimuth": f"{rng.uniform(0, 360)} deg"}  # fmt: skip
+    if rng.random() < 0.5:
+        kick |= {"anomaly": f"{rng.uniform(0, 360)} deg"}
+    else:
+        kick |= {"seed": rng.randint(0, 1000)}
+    if rng.random() < 0.7:
+        kick |= {"time": f"{log_uniform(rng, 1e3, 1e9)} yr", "mass_lost": rng.uniform(0.0, 0.5) * mass}
+    return kick
 
 
 def random_braking(rng):
