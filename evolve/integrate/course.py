@@ -168,7 +168,7 @@ class Course:
             state = np.array(interpolant(x))
             return self._readings(stretch.quantities(x, state))[order]
 
-        if start * end > 0.0 or end == 0.0:
+        if start * end > 0.0 or end == 0.0 or low == high:  # a step too short for a float
             return high
         digits = 4e-16 * max(abs(low), abs(high))
         width = max(digits, 1e-12 * (high - low))

@@ -13,8 +13,9 @@ from evolve.integrate.outcomes import sentence
 from evolve.integrate.recorder import Recorder
 from evolve.integrate.stretch import InspiralStretch, TimeStretch
 from evolve.integrate.watches import CONTACT_MARGIN, WAKE, noted, watches_for
+from evolve.system.gauges import RUNAWAY_FILL
 from evolve.system.layout import OTHER
-from evolve.system.pair import Pair
+from evolve.system.pair import OVERFILL, Pair
 
 DETAILS = {
     "burning_ends": "the main sequence of {} is over",
@@ -219,11 +220,20 @@ class Run:
         self.in_contact[c] = True
         self._switch(f"flow_{c}", True)
         quantities = self.now()
+        if self.law == "locked" and self._overfilled(c, quantities):
+            self._mark("unstable_overflow", c, len(self.recorder) - 1)
+            return self._unstable(c)
         if self.law == "locked":
             self._set(f"ln_radius_{c}", log(getattr(quantities, f"lobe_{c}")))
         elif getattr(quantities, f"zeta_{c}") <= getattr(quantities, f"zeta_lobe_{c}"):
             self._mark("unstable_overflow", c, len(self.recorder) - 1)
         return None
+
+    def _overfilled(self, c, quantities):
+        """True if a sudden change has left a star too large for R = R_L to be imposed on it."""
+        most = RUNAWAY_FILL if self.pair.models[c].relaxing else 1.0 + OVERFILL
+        ratio = getattr(quantities, f"radius_{c}") / getattr(quantities, f"lobe_{c}")
+        return ratio > most
 
     def _circularise(self):
         """Contact at periastron rounds the orbit at constant J; its lobes then have grown.

@@ -29,6 +29,9 @@ LARGEST_EXCESS = 1e6
 COOL_WEIGHT, HOT_WEIGHT = 1.3, 0.62
 COLD, WARM = log(9e3), log(1.1e4)
 LARGEST_LOG = log10(20.0)  # of the mass ratio, either way: the range of the fits
+THICKEST = 0.25
+"""No atmosphere counts as thicker than this over the radius: none flows from a star that is
+smaller than a tenth of its lobe."""
 FALLBACK_HEIGHT, FALLBACK_RATE = 1e-4, 1e-8
 
 
@@ -93,7 +96,7 @@ def photosphere(mass, radius, lobe, temperature, mass_ratio):
     -------
     height : float
         Pressure scale height on the way to the inner Lagrange point, over the radius,
-        k T R/(mu m_u G m g).
+        k T R/(mu m_u G m g); at most 0.25, for a star that hardly holds its atmosphere.
     rate : float  [solMass/yr]
         F0 = (2 pi/sqrt(e)) f R_L^3/(G m) (k T/(mu m_u))^(3/2) rho_ph, with rho_ph =
         (2/3) (G m/R^2) mu m_u/(kappa k T) and kappa = 0.1 cm2/g.
@@ -120,7 +123,8 @@ def photosphere(mass, radius, lobe, temperature, mass_ratio):
     gradient = 0.830 + x * (-0.0226 + x * (-0.0410 + 0.0161 * x))
     nozzle = 1.222 + x * (0.543 + x * (0.043 - 0.052 * x))
     area = lobe * lobe * lobe / (radius * radius)
-    return square * radius / (G * mass * gradient), REFERENCE * nozzle * sqrt(square) * area
+    height = min(square * radius / (G * mass * gradient), THICKEST)
+    return height, REFERENCE * nozzle * sqrt(square) * area
 
 
 def excess(star, other, orbit, keys):

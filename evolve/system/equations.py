@@ -218,7 +218,7 @@ def _either(c, flowing, idle):
 def _excess(plan, c):
     if plan.overflow == "atmosphere":  # of no interest to a star far inside its lobe
         call = f"overflow_excess(star_{c}, star_{OTHER[c]}, orbit, overflow_keys)"
-        return f"{call} if radius_{c} > 0.5 * lobe_{c} else -1e9"
+        return f"{call} if radius_{c} > 0.1 * lobe_{c} else -1e9"
     return f"log(radius_{c} / lobe_{c})"
 
 

@@ -31,8 +31,8 @@ def gauge_expressions(plan):
         accepts over its ceiling; burning_c: ln of what reaches c over the least that burns
         steadily there; eccentricity: ln e;
         darwin: positive when no stable synchronous orbit exists, (I_A + I_B) n > J/3 (Hut
-        1980, A&A 92, 167); merger: positive when a star that cannot overflow fills its lobe, or
-        both meet the last stable orbit; log_period: ln P in
+        1980, A&A 92, 167); merger: positive when a star that cannot overflow fills its lobe,
+        one that can reaches past its companion, or both meet the last stable orbit; log_period: ln P in
         yr; period_rate: d ln P/dt [1/yr]; mass_ratio: ln(m_A/m_B); time [yr].
     """
     gauges = {"time": "time"}
@@ -45,13 +45,15 @@ def gauge_expressions(plan):
     spins = [f"spin_momentum_{c} / spin_{c}" for c in plan.order if plan.components[c].tides]
     if spins:  # moments of inertia of the stars whose spins are followed
         gauges["darwin"] = f"log(3.0 * ({' + '.join(spins)}) * omega / angular_momentum)"
-    # a star that cannot overflow is swallowed when it fills its lobe
-    filled = "".join(
-        f"radius_{c} / lobe_{c}, " for c in plan.order if not plan.components[c].overflows
-    )
+    # a star that cannot overflow is swallowed when it fills its lobe, its companion by one
+    # that can when that reaches past it
     periastron = "(separation * (1.0 - eccentricity))"
+    filled = "".join(
+        f"radius_{c} / {periastron if plan.components[c].overflows else f'lobe_{c}'}, "
+        for c in plan.order
+    )
     gauges["merger"] = (
-        f"max({filled}6.0 * G * (mass_A + mass_B) / (C * C * {periastron}), 0.0) - 1.0"
+        f"max({filled}6.0 * G * (mass_A + mass_B) / (C * C * {periastron})) - 1.0"
     )
     gauges["log_period"] = f"log({6.283185307179586!r} / omega)"
     gauges["period_rate"] = (

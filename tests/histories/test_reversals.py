@@ -194,3 +194,73 @@ def test_a_track_that_is_stripped_to_its_core_ends_as_that(tmp_path, core, radiu
     assert history.outcome == "time" and history.chapters[-1].regime == "detached"
     expected = radius or 0.05
     assert history["radius_A"][-1] == pytest.approx(expected, rel=1e-6 if radius else 1.0)
+
+
+@pytest.mark.parametrize("law", ["atmosphere", "polytrope"])
+def test_a_companion_that_the_donor_reaches_past_has_merged_with_it(law):
+    """Unstable overflow that is told to go on ends where R exceeds the periastron distance."""
+    history = evolve.run(
+        {
+            "A": {"mass": 2.1, "star": "giant", "core_mass": 0.33}, "B": {"mass": 0.04, **POINT},
+            "orbit": {"contact": True}, "overflow": {"law": law}, "acceptance": {"share": 0.5},
+            "expulsion": {"from": "multiple", "multiple": 2.9}, "envelope": {"follows": "continue"},
+            "end": {"time": "400 Myr"},
+        }
+    )  # fmt: skip
+    assert history.outcome == "merger"
+    assert history["radius_A"][-1] == pytest.approx(history["separation"][-1], rel=1e-6)
+
+
+def test_a_companion_within_the_last_stable_orbit_has_merged():
+    """A donor that shrinks with its orbit to 6 G M/c2 of the black hole is swallowed."""
+    history = evolve.run(
+        {
+            "A": {"mass": 6.3, "star": "compact", "kind": "black-hole"},
+            "B": {"mass": 0.5, "star": "power-law", "radius": 0.3, "exponent": 2.4},
+            "orbit": {"contact": True}, "waves": {"strength": 25.0}, "overflow": {"law": "locked"},
+            "acceptance": {"share": 0.9}, "expulsion": {"from": "outer-point"},
+        }
+    )  # fmt: skip
+    assert history.outcome == "merger"
+    smallest = 6.0 * 3.9251256e8 / 1.3598865e7**2
+    assert history["separation"][-1] < 3.0 * smallest * (history["mass_A"][-1] + history["mass_B"][-1])
+
+
+@pytest.mark.parametrize("star", [
+    {"mass": 1.6, "star": "power-law", "radius": 0.02, "exponent": 2.9},
+    {"mass": 1.6, "star": "expanding", "radius": 1.0, "growth_time": "1 Gyr"},
+    {"mass": 1.6, "star": "compact", "kind": "neutron-star"},
+])  # fmt: skip
+def test_a_star_that_is_blown_away_ends_the_history(star):
+    """Nothing but a millionth is left: the models mean nothing there, and a run says so."""
+    history = evolve.run(losing(star, 1e-6))
+    assert history.outcome == "validity" and history.complete
+    assert history["mass_A"][-1] == pytest.approx(1.6e-6, rel=1e-3)
+
+
+def test_a_star_left_too_large_by_a_kick_overflows_unstably():
+    """R = R_L cannot be imposed on a star that a sudden loss of mass left larger than that."""
+    history = evolve.run(
+        {
+            "A": {"mass": 9.0, **POINT}, "B": {"mass": 0.13, "star": "helium-star", "semi_degenerate": "true"},
+            "orbit": {"fill": 0.9}, "waves": {"law": "off"}, "overflow": {"law": "locked"},
+            "kick": {"B": {"time": "1 Myr", "mass_lost": 0.06}},
+        }
+    )  # fmt: skip
+    assert history.outcome == "unstable_overflow"
+    names = [e.name for e in history.events]
+    assert names == ["start", "kick", "contact", "circularised", "contact", "unstable_overflow", "end"]
+
+
+def test_a_puffed_up_star_falls_asleep_once():
+    """A star of low mass holds its atmosphere so loosely that it flows from half its lobe: the
+    flow must fade without an end of its own."""
+    history = evolve.run(
+        {
+            "A": {"mass": 0.2, "star": "expanding", "radius": 0.64, "growth_time": "187 Myr", "zeta_ad": 2.7},
+            "B": {"mass": 1.36, "star": "white-dwarf"}, "orbit": {"fill": 0.88},
+            "acceptance": {"share": 0.0}, "end": {"time": "11 Gyr"},
+        }
+    )  # fmt: skip
+    assert history.outcome in ("time", "validity")
+    assert history["fill_A"][-1] < 0.5
