@@ -6,6 +6,8 @@ from evolve.constants import KM_S
 from evolve.history import COLUMNS, Chapter, Event, History, Ledger
 from evolve.integrate.derive import FLOW_COLUMNS, columns_of
 from evolve.integrate.outcomes import GOOD
+from evolve.laws.changes import CHANGES, sources_of_events
+
 
 def history_of(run):
     """The History of a finished run.
@@ -34,10 +36,18 @@ def history_of(run):
         config_text=config.text,
         config_files=config.files,
         statistics=_statistics(run),
-        sources=tuple(dict.fromkeys(key for act in run.acts for key in sources_of(act.pair))),
+        sources=_sources(run, columns),
         warnings=list(config.warnings),
         references=references_of(run.acts),
     )
+
+
+def _sources(run, columns):
+    """Bibliography keys of what acted, of what happened, and of the columns that need one."""
+    keys = [key for act in run.acts for key in sources_of(act.pair)]
+    keys += sources_of_events(mark.name for mark in run.marks)
+    keys += CHANGES["disc"].law.sources if "disc_critical_rate" in columns else ()
+    return tuple(dict.fromkeys(keys))
 
 
 def _columns(run):
@@ -166,7 +176,7 @@ def sources_of(pair):
     laws = pair.laws
     chosen = [laws.waves, *laws.braking.values(), *laws.wind.values(), *laws.capture.values()]
     chosen += [laws.overflow, *laws.ceiling.values(), *(c for _, c in laws.expulsion.values())]
-    chosen.append(laws.consequential)
+    chosen += [laws.consequential, *laws.tides.values()]
     keys = ["iau-2015", "eggleton-1983"]
     for entry in chosen:
         keys += getattr(getattr(entry, "law", None), "sources", ())

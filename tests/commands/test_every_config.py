@@ -143,3 +143,24 @@ def test_laws_that_acted_are_known_to_laws(path, capsys):
                 if key in one and one[key] not in ("none", "off"):
                     assert main(["laws", one[key]]) == 0
                     assert one[key] in capsys.readouterr()[0]
+
+
+def test_laws_tells_of_what_acts_without_being_chosen(capsys):
+    """Common envelope, sudden loss, collapse, disc: with the keys of their sections and sources."""
+    assert main(["laws", "change"]) == 0
+    text = capsys.readouterr()[0]
+    for word in ("Webbink", "Blaauw", "Hills", "Lattimer", "Lasota", "envelope.efficiency",
+                 "kick.polar [deg]", "0 to 180", "limits.white_dwarf [solMass]"):  # fmt: skip
+        assert word in text, word
+    assert main(["laws"]) == 0
+    assert " nan" not in capsys.readouterr()[0]
+
+
+def test_sources_name_what_happened(told, capsys):
+    for name, authors in (
+        ("tides", ["Hut", "Zahn"]), ("common_envelope", ["Webbink, R. F. (1984)"]),
+        ("track", ["Blaauw", "Lattimer", "Lasota"]), ("massive_black_hole", ["Vink", "Bondi"]),
+    ):  # fmt: skip
+        assert main(["sources", str(told[name][2])]) == 0
+        text = capsys.readouterr()[0]
+        assert all(author in text for author in authors), name
