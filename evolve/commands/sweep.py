@@ -13,7 +13,8 @@ def arguments(parser):
     parser.add_argument("-o", "--output", metavar="FILE.h5", help="default: the study's name, here")
     parser.add_argument("--workers", type=int, default=1, metavar="N", help="processes (1)")
     parser.add_argument("--cluster", metavar="ADDRESS", help="of a dask.distributed scheduler")
-    parser.add_argument("--replace", action="store_true", help="start afresh, overwrite")
+    parser.add_argument("--replace", action="store_true", help="overwrite; a journal of another study too")
+    parser.add_argument("--allow-code", action="store_true", help="execute laws of your own")
 
 
 def run(arguments):
@@ -25,7 +26,7 @@ def run(arguments):
 
     if arguments.workers < 1:
         raise ConfigError(f"--workers {arguments.workers}: allowed: 1 or more")
-    study = read_study(arguments.study)
+    study = read_study(arguments.study, allow_code=arguments.allow_code)
     output = Path(arguments.output or Path(arguments.study).with_suffix(".h5").name)
     try:
         with counting_bar(study.size, "history", arguments.quiet) as progress:
