@@ -21,13 +21,9 @@ def integrate(config, progress=None):
     ConfigError
         If the pair cannot start as written.
     """
-    from evolve.errors import ConfigError
     from evolve.integrate.assemble import history_of
     from evolve.integrate.run import Run
     from evolve.system.pair import Pair
 
-    if config.values["numerics"]["engine"] == "compiled":
-        raise ConfigError(
-            f'{config.name}: numerics.engine = "compiled": is not there yet; allowed: auto, plain'
-        )
-    return history_of(Run(Pair(config), progress).run())
+    compiled = config.values["numerics"]["engine"] == "compiled"
+    return history_of(Run(Pair(config), progress, compiled).run())

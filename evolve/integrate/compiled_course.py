@@ -1,0 +1,99 @@
+"""A stretch on the compiled engine: what `course` does around solve_ivp, in one call or a few."""
+
+from math import inf
+
+import numpy as np
+
+from evolve.integrate.advance import DOMAIN, FIRED, MORE, STEP_LIMIT, TOO_SMALL
+from evolve.integrate.course import FINEST, sharpness
+from evolve.integrate.engine import flat
+from evolve.integrate.solver import Halt
+
+SHARE = 1000
+"""Steps in one call: between calls the progress shows, and Ctrl-C is heard."""
+RADII, OTHERS = (-20.0, 15.0), (-inf, inf)
+
+
+class CompiledCourse:
+    """A stretch on its way.
+
+    Parameters
+    ----------
+    run : evolve.integrate.run.Run
+    stretch : TimeStretch
+    watches : list of Watch
+    engine : evolve.integrate.engine.Engine
+
+    Attributes
+    ----------
+    noted, fired, halt, first_row
+        As those of `evolve.integrate.course.Course`.
+    """
+
+    def __init__(self, run, stretch, watches, engine):
+        self.run, self.stretch, self.watches, self.engine = run, stretch, watches, engine
+        self.noted, self.fired, self.halt = [], None, None
+        self.first_row = len(run.recorder)
+        layout = run.pair.layout
+        self.core = layout.core
+        self.sizes = (len(layout.quantities), len(layout.gauges))
+
+    def follow(self, bound):
+        """Integrate to `bound` or the first terminal event; the engine's complaint or ""."""
+        run, stretch = self.run, self.stretch
+        numbers = [*map(float, run.switches), stretch.origin, *flat(run.pair.parameters)]
+        parameters, control, bounds = np.array(numbers), self._control(), self._bounds()
+        watches = self._watches()
+        x, h, state, reason = stretch.start, 0.0, stretch.state, MORE
+        while reason == MORE:
+            left = run.numerics["max_evaluations"] - run.evaluations
+            reason, slot, h, xs, states, seen, found, evaluations, steps = self.engine.advance(
+                self.engine.rates, self.engine.look, (x, float(bound), h, state), parameters,
+                self.sizes, control, bounds, watches, (left, SHARE),
+            )  # fmt: skip
+            run.evaluations, run.steps = run.evaluations + evaluations, run.steps + steps
+            first = run.recorder.extend(stretch.origin + xs, states, seen)
+            for row, watch, residual in found.tolist():
+                self.noted.append((self.watches[int(watch)], first + int(row), residual))
+            if reason == FIRED:
+                self.fired = self.noted.pop()
+            elif len(xs):
+                x, state = xs[-1], states[-1]
+            if run.progress:
+                run.progress(stretch.origin + x, run.end["time"], run.regime, 0)
+        return self._verdict(reason, slot)
+
+    def _control(self):
+        """Tolerances of the core, sizes that differences are scaled to, the longest step."""
+        numerics, core, state = self.run.numerics, self.core, self.stretch.state
+        rtol = max(numerics["rtol"] * sharpness(self.run.pair.plan), FINEST)
+        atol = self.stretch.atol(rtol)[: len(core)]
+        if numerics["atol"] is not None:
+            atol[:] = numerics["atol"]
+        floor = [
+            1e-9 * abs(x) + name.startswith(("ln_", "ecc"))
+            for name, x in zip(core, state.tolist(), strict=False)
+        ]
+        longest = inf if numerics["max_step"] is None else numerics["max_step"]
+        return rtol, atol, np.array(floor), float(longest)
+
+    def _bounds(self):
+        """Within which a state may lie: masses and J above 0, radii in their range."""
+        ranges = [RADII if name.startswith("ln_") else OTHERS for name in self.core]
+        ranges[:3] = [(0.0, inf)] * 3
+        return tuple(np.array(ends) for ends in zip(*ranges, strict=True))
+
+    def _watches(self):
+        columns = zip(*[(w.gauge, w.level, w.direction, w.terminal) for w in self.watches])
+        kinds = (np.int64, np.float64, np.int64, np.bool_)
+        return tuple(np.array(c, kind) for c, kind in zip(columns, kinds, strict=True))
+
+    def _verdict(self, reason, slot):
+        if reason == STEP_LIMIT:
+            spent = self.run.evaluations
+            self.halt = Halt("step_limit", f"{spent} evaluations of the equations were spent")
+        elif reason == DOMAIN:
+            bad = "a mass or the angular momentum" if slot < 3 else self.core[slot]
+            self.halt = Halt("domain", f"{bad} left the range in which the equations hold")
+        return "no step is short enough" if reason == TOO_SMALL else ""
+
