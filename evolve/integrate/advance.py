@@ -12,7 +12,6 @@ from evolve.integrate.rosenbrock import (
     difference_jacobian,
     error_norm,
     evaluate,
-    interpolate,
     step,
 )
 
@@ -48,40 +47,47 @@ def first_step(y, f, rtol, atol, span):
     return min(0.01 * (size / change) ** 0.5, span)
 
 
-def root(look, x, h, y, new, u, p, watch, gauge, level, before, after, state, quantities, gauges):
-    """Share of a step at which one watched gauge crosses its level.
+def within(rates, look, x, y, f, h, p, room, state, quantities, gauges):
+    """Fill the state a length h after (x, y), and what it shows: by a step of just that length,
+    which is as accurate as the one it is part of; an interpolant over a long step is not."""
+    jacobian, matrix, pivots, u, right = room
+    step(rates, x, y, f, h, p, jacobian, matrix, pivots, u, right, state)
+    observe(look, x + h, state, p, quantities, gauges)
+
+
+def root(rates, look, x, y, f, h, p, room, gauge, level, before, after, state, quantities, gauges):
+    """Length after which one gauge crosses its level within a step of length h.
 
     Bisection sped up by inverse quadratic interpolation: Chandrupatla 1997, Adv. Eng. Softw.
     28, 145. A gauge that jumps (it reads +-1/2) would be met again from before its jump: the
-    share lies past it.
+    length then lies past it.
     """
     if before * after > 0.0 or after == 0.0:
-        return 1.0
-    a, fa, b, fb = 1.0, after, 0.0, before
+        return h
+    a, fa, b, fb = h, after, 0.0, before
     c, fc, share = b, fb, 0.5
-    width = max(1e-12, 4e-16 * max(abs(x), abs(x + h)) / h)
+    width = max(1e-12 * h, 4e-16 * max(abs(x), abs(x + h)))
     for _ in range(100):
-        s = a + share * (b - a)
-        interpolate(s, y, new, u, state)
-        observe(look, x + s * h, state, p, quantities, gauges)
-        fs = gauges[gauge[watch]] - level[watch]
-        if (fs > 0.0) == (fa > 0.0):
+        length = a + share * (b - a)
+        within(rates, look, x, y, f, length, p, room, state, quantities, gauges)
+        value = gauges[gauge] - level
+        if (value > 0.0) == (fa > 0.0):
             c, fc = a, fa
         else:
             c, fc, b, fb = b, fb, a, fa
-        a, fa = s, fs
-        best = a if abs(fa) < abs(fb) else b
-        limit = width / abs(b - c) if b != c else 1.0
-        if limit > 0.5 or fa == 0.0:
+        a, fa = length, value
+        least = width / abs(b - c) if b != c else 1.0
+        if least > 0.5 or fa == 0.0:
             break
         xi, phi = (a - b) / (c - b), (fa - fb) / (fc - fb)
         share = 0.5
         if phi * phi < xi and (1.0 - phi) ** 2 < 1.0 - xi:
             share = fa / (fb - fa) * fc / (fb - fc)
             share += (c - a) / (b - a) * fa / (fc - fa) * fb / (fc - fb)
-        share = min(max(share, limit), 1.0 - limit)
-    if abs(fa) == 0.5 and fa * before > 0.0:
-        best = b
+        share = min(max(share, least), 1.0 - least)
+    best = a if abs(fa) < abs(fb) else b
+    if abs(fa) == 0.5:  # past a jump: where the sign is that of the far end
+        best = a if fa * after > 0.0 else b
     return best
 
 
@@ -124,16 +130,18 @@ def next_length(h, error, last_h, last_error):
     return h / factor
 
 
-def find_events(look, x, h, y, new, u, p, watches, before, after, rows, found):
+def find_events(rates, look, x, y, f, h, p, room, watches, before, after, rows, found):
     """Rows of the events within one step, up to and with the first terminal one.
 
     Parameters
     ----------
+    room : tuple
+        Jacobian at y, and room to work in.
     watches : tuple of ndarray
         gauge, level, direction, terminal of every watch.
     before, after : ndarray
         Readings at both ends of the step.
-    rows, found : Rows and Found
+    rows, found : tuple of ndarray, ndarray
         To fill.
 
     Returns
@@ -145,30 +153,31 @@ def find_events(look, x, h, y, new, u, p, watches, before, after, rows, found):
     xs, states, quantities, gauges, counts = rows
     if not any_crossed(direction, before, after):
         return False
-    shares = np.full(len(gauge), 2.0)
+    lengths = np.full(len(gauge), np.inf)
     for watch in range(len(gauge)):
         if crossed(watch, direction, before, after):
-            shares[watch] = root(
-                look, x, h, y, new, u, p, watch, gauge, level, before[watch], after[watch],
-                states[counts[ROW]], quantities[counts[ROW]], gauges,
+            lengths[watch] = root(
+                rates, look, x, y, f, h, p, room, gauge[watch], level[watch], before[watch],
+                after[watch], states[counts[ROW]], quantities[counts[ROW]], gauges,
             )  # fmt: skip
     while True:
-        watch = np.argmin(shares)
-        if shares[watch] > 1.0:
+        watch = np.argmin(lengths)
+        if lengths[watch] > h:
             return False
         row, event = counts[ROW], counts[EVENT]
-        xs[row] = x + shares[watch] * h
-        interpolate(shares[watch], y, new, u, states[row])
-        observe(look, xs[row], states[row], p, quantities[row], gauges)
+        xs[row] = x + lengths[watch]
+        within(
+            rates, look, x, y, f, lengths[watch], p, room, states[row], quantities[row], gauges
+        )
         found[event, 0], found[event, 1] = row, watch
         found[event, 2] = gauges[gauge[watch]] - level[watch]
         counts[ROW], counts[EVENT] = row + 1, event + 1
         if terminal[watch]:
             return True
-        shares[watch] = 2.0
+        lengths[watch] = np.inf
 
 
-def take_step(rates, x, y, f, p, h, end, control, jacobian, matrix, pivots, u, right, new, memory):
+def take_step(rates, x, y, f, p, h, end, control, room, new, memory):
     """The next step that meets the tolerance, shortened as often as it takes.
 
     Parameters
@@ -183,8 +192,9 @@ def take_step(rates, x, y, f, p, h, end, control, jacobian, matrix, pivots, u, r
     float
         Length of the step taken: 0.0 if none is short enough.
     """
-    rtol, atol, _, longest = control
-    memory[SPENT] += difference_jacobian(rates, x, y, f, p, control[2], jacobian, right)
+    rtol, atol, floor, longest = control
+    jacobian, matrix, pivots, u, right = room
+    memory[SPENT] += difference_jacobian(rates, x, y, f, p, floor, jacobian, right)
     rejected = False
     while True:
         h = min(h, longest)
@@ -244,16 +254,18 @@ def advance(rates, look, start, p, sizes, control, bounds, watches, limits):
     evaluations, steps : int
     """
     x, end, h, y = start
-    n, columns, room = len(y), len(control[2]), limits[1] + 2 * len(watches[0])
+    n, columns, most = len(y), len(control[2]), limits[1] + 2 * len(watches[0])
     rows = (
-        np.empty(room), np.empty((room, n)), np.empty((room, sizes[0])), np.empty(sizes[1]),
+        np.empty(most), np.empty((most, n)), np.empty((most, sizes[0])), np.empty(sizes[1]),
         np.zeros(2, np.int64),
     )  # fmt: skip
     xs, states, quantities, gauges, counts = rows
-    found, memory = np.empty((room, 3)), np.zeros(4)
-    y, new, f, right = y.copy(), np.empty(n), np.empty(n), np.empty(n)
-    jacobian, u, here = np.empty((n, columns)), np.empty((STAGES, n)), np.empty(sizes[0])
-    matrix, pivots = np.empty((columns, columns)), np.empty(columns, np.int64)
+    found, memory = np.empty((most, 3)), np.zeros(4)
+    y, new, f, here = y.copy(), np.empty(n), np.empty(n), np.empty(sizes[0])
+    room = (
+        np.empty((n, columns)), np.empty((columns, columns)), np.empty(columns, np.int64),
+        np.empty((STAGES, n)), np.empty(n),
+    )  # fmt: skip
     before, after = np.empty(len(watches[0])), np.empty(len(watches[0]))
     observe(look, x, y, p, here, gauges)
     read(gauges, watches[0], watches[1], before)
@@ -261,13 +273,11 @@ def advance(rates, look, start, p, sizes, control, bounds, watches, limits):
     memory[SPENT], reason, slot, steps = 1.0, MORE, -1, 0
     if h <= 0.0:
         h = first_step(y, f, control[0], control[1], end - x)
-    while reason == MORE and steps < limits[1] and counts[ROW] + len(watches[0]) < room:
+    while reason == MORE and steps < limits[1] and counts[ROW] + len(watches[0]) < most:
         if memory[SPENT] > limits[0]:
             reason = STEP_LIMIT
             break
-        taken = take_step(
-            rates, x, y, f, p, h, end, control, jacobian, matrix, pivots, u, right, new, memory
-        )
+        taken = take_step(rates, x, y, f, p, h, end, control, room, new, memory)
         if taken == 0.0:
             reason = TOO_SMALL
             break
@@ -275,7 +285,9 @@ def advance(rates, look, start, p, sizes, control, bounds, watches, limits):
         arrived = end if x + taken >= end else x + taken
         observe(look, arrived, new, p, here, gauges)
         read(gauges, watches[0], watches[1], after)
-        if find_events(look, x, taken, y, new, u, p, watches, before, after, rows, found):
+        if find_events(
+            rates, look, x, y, f, taken, p, room, watches, before, after, rows, found
+        ):
             reason = FIRED
             break
         slot = out_of_bounds(new, bounds[0], bounds[1])

@@ -5,12 +5,14 @@ from math import inf
 import numpy as np
 
 from evolve.integrate.advance import DOMAIN, FIRED, MORE, STEP_LIMIT, TOO_SMALL
-from evolve.integrate.course import FINEST, sharpness
+from evolve.integrate.course import FINEST, sharpness, smallest_sizes
 from evolve.integrate.engine import flat
 from evolve.integrate.solver import Halt
 
 SHARE = 1000
 """Steps in one call: between calls the progress shows, and Ctrl-C is heard."""
+SHARP = 2e-7
+"""Tolerance that a cubic overflow and a locked tide need: they balance on small differences."""
 RADII, OTHERS = (-20.0, 15.0), (-inf, inf)
 
 
@@ -65,15 +67,14 @@ class CompiledCourse:
 
     def _control(self):
         """Tolerances of the core, sizes that differences are scaled to, the longest step."""
-        numerics, core, state = self.run.numerics, self.core, self.stretch.state
-        rtol = max(numerics["rtol"] * sharpness(self.run.pair.plan), FINEST)
+        numerics, core = self.run.numerics, self.core
+        rtol = max(numerics["rtol"], FINEST)
+        if sharpness(self.run.pair.plan) < 1.0:
+            rtol = min(rtol, SHARP)
         atol = self.stretch.atol(rtol)[: len(core)]
         if numerics["atol"] is not None:
             atol[:] = numerics["atol"]
-        floor = [
-            1e-9 * abs(x) + name.startswith(("ln_", "ecc"))
-            for name, x in zip(core, state.tolist(), strict=False)
-        ]
+        floor = smallest_sizes(self.run.pair, self.stretch.state.tolist())
         longest = inf if numerics["max_step"] is None else numerics["max_step"]
         return rtol, atol, np.array(floor), float(longest)
 

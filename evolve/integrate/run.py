@@ -79,6 +79,7 @@ class Run:
         self.idle = 0
         self.opening_event = ""
         self.ignored, self.kicked = set(), set()
+        self._asked, self._quantities = (None,) * 4, None
         self.compiled, self.engine, self.warnings = compiled, None, []
 
     # What watches and chapters ask -----------------------------------------------------
@@ -99,8 +100,12 @@ class Run:
         return next((f"overflow_{c}" for c in "AB" if self.in_contact[c]), "detached")
 
     def now(self):
-        """The quantities at the present state."""
-        return self.pair.quantities(self.time, self.state.tolist(), self.switches)
+        """The quantities at the present state, computed once."""
+        asked = (self.pair, self.time, self.state, self.switches)
+        if any(one is not other for one, other in zip(asked, self._asked, strict=True)):
+            self._asked = asked
+            self._quantities = self.pair.quantities(self.time, self.state.tolist(), self.switches)
+        return self._quantities
 
     def _inspirals(self):
         """True if only waves act and no star can fill its lobe: then -ln a leads."""
@@ -146,18 +151,17 @@ class Run:
         return None
 
     def _course(self, stretch):
-        watches = watches_for(self)
         if self.compiled and not self.inspiral:
             from evolve.integrate.compiled_course import CompiledCourse
             from evolve.integrate.engine import CannotCompile, engine_of
 
             try:
                 self.engine = self.engine or engine_of(self.pair, self._compiling)
-                return CompiledCourse(self, stretch, watches, self.engine)
+                return CompiledCourse(self, stretch, self.watches, self.engine)
             except CannotCompile as error:
                 self.compiled = False
                 self.warnings.append(f"the equations run plain, for they do not compile: {error}")
-        return Course(self, stretch, watches)
+        return Course(self, stretch, self.watches)
 
     def _compiling(self):
         if self.progress:
@@ -188,10 +192,11 @@ class Run:
             if self.idle > CHATTER:
                 return self._finish("failed", "events follow each other without time passing")
             readings = self.pair.gauges(self.now())
+            self.watches = watches_for(self)
             past = next(
                 (
                     watch
-                    for watch in watches_for(self)
+                    for watch in self.watches
                     if watch.terminal and watch.at_once
                     and watch.direction * (readings[watch.gauge] - watch.level) > 0.0
                 ),
