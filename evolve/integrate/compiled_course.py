@@ -22,7 +22,7 @@ class CompiledCourse:
     Parameters
     ----------
     run : evolve.integrate.run.Run
-    stretch : TimeStretch
+    stretch : TimeStretch or InspiralStretch
     watches : list of Watch
     engine : evolve.integrate.engine.Engine
 
@@ -46,7 +46,7 @@ class CompiledCourse:
         numbers = [*map(float, run.switches), stretch.origin, *flat(run.pair.parameters)]
         parameters, control, bounds = np.array(numbers), self._control(), self._bounds()
         watches = self._watches()
-        x, h, state, reason = stretch.start, 0.0, stretch.state, MORE
+        x, h, state, reason = float(stretch.start), 0.0, self._packed(stretch.state), MORE
         while reason == MORE:
             left = run.numerics["max_evaluations"] - run.evaluations
             reason, slot, h, xs, states, seen, found, evaluations, steps = self.engine.advance(
@@ -54,16 +54,28 @@ class CompiledCourse:
                 self.sizes, control, bounds, watches, (left, SHARE),
             )  # fmt: skip
             run.evaluations, run.steps = run.evaluations + evaluations, run.steps + steps
-            first = run.recorder.extend(stretch.origin + xs, states, seen)
-            for row, watch, residual in found.tolist():
-                self.noted.append((self.watches[int(watch)], first + int(row), residual))
-            if reason == FIRED:
-                self.fired = self.noted.pop()
-            elif len(xs):
+            if len(xs):
                 x, state = xs[-1], states[-1]
+            self._record(xs, states, seen, found)
             if run.progress:
-                run.progress(stretch.origin + x, run.end["time"], run.regime, 0)
+                run.progress(run.recorder.last_time, run.end["time"], run.regime, 0)
+        if reason == FIRED:
+            self.fired = self.noted.pop()
         return self._verdict(reason, slot)
+
+    def _packed(self, state):
+        """The state as the engine has it: in an inspiral, time follows the core."""
+        if not self.stretch.inspiral:
+            return state
+        return np.concatenate((state[: len(self.core)], state[-1:], state[len(self.core) : -1]))
+
+    def _record(self, xs, states, seen, found):
+        """Take over rows and events."""
+        if self.stretch.inspiral:
+            xs, states = states[:, len(self.core)], np.delete(states, len(self.core), axis=1)
+        first = self.run.recorder.extend(self.stretch.origin + xs, states, seen)
+        for row, watch, residual in found.tolist():
+            self.noted.append((self.watches[int(watch)], first + int(row), residual))
 
     def _control(self):
         """Tolerances of the core, sizes that differences are scaled to, the longest step."""
@@ -71,11 +83,13 @@ class CompiledCourse:
         rtol = max(numerics["rtol"], FINEST)
         if sharpness(self.run.pair.plan) < 1.0:
             rtol = min(rtol, SHARP)
-        atol = self.stretch.atol(rtol)[: len(core)]
+        atol = self._packed(self.stretch.atol(rtol))[: len(core) + self.stretch.inspiral]
         if numerics["atol"] is not None:
-            atol[:] = numerics["atol"]
+            atol[: len(core)] = numerics["atol"]
         floor = smallest_sizes(self.run.pair, self.stretch.state.tolist())
-        longest = inf if numerics["max_step"] is None else numerics["max_step"]
+        longest = numerics["max_step"]
+        if longest is None or self.stretch.inspiral:
+            longest = inf
         return rtol, atol, np.array(floor), float(longest)
 
     def _bounds(self):

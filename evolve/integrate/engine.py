@@ -21,6 +21,7 @@ from typing import Any, Callable, NamedTuple
 from evolve.errors import MissingExtra
 from evolve.integrate import advance as walk
 from evolve.integrate import rosenbrock
+from evolve.integrate.stretch import shrinking_rate
 
 SWITCHES = 4
 """Numbers at the head of the flat array, before the origin of time: flow and braking of each."""
@@ -63,7 +64,10 @@ def jitted(function, done=None, **options):
         for name in function.__code__.co_names:
             if isinstance(names.get(name), types.FunctionType):
                 names[name] = jitted(names[name], done)
-        copy = types.FunctionType(function.__code__, names, function.__name__)
+        copy = types.FunctionType(
+            function.__code__, names, function.__name__, function.__defaults__
+        )
+        copy.__kwdefaults__ = function.__kwdefaults__
         done[function] = numba.njit(copy, **OPTIONS)
     return done[function]
 
@@ -77,12 +81,14 @@ def flat(parameters):
     return numbers
 
 
-def engine_of(pair, tell=None):
+def engine_of(pair, inspiral=False, tell=None):
     """The compiled engine of a pair, made when it is first needed.
 
     Parameters
     ----------
     pair : evolve.system.pair.Pair
+    inspiral : bool
+        Whether -ln a is the independent variable, and time a slot after the core.
     tell : callable, optional
         Called without arguments before a compilation, which takes seconds.
 
@@ -97,7 +103,7 @@ def engine_of(pair, tell=None):
     CannotCompile
         With numba's own reason.
     """
-    text, classes = _equations(pair)
+    text, classes = _equations(pair, inspiral)
     user = {name: f for name, f in pair.functions.items() if not f.__module__.startswith("evolve.")}
     key = (pair.equations, text, tuple(user.values()))
     if key not in _engines:
@@ -109,7 +115,7 @@ def engine_of(pair, tell=None):
     return _engines[key]
 
 
-def _equations(pair):
+def _equations(pair, inspiral):
     """Text of the equations with flat arguments, and the classes of Keys it names."""
     slots, classes, groups, place = pair.layout, {}, [], FIRST
     for number, group in enumerate(pair.parameters):
@@ -122,30 +128,39 @@ def _equations(pair):
         if name:
             classes[name] = type(group)
         groups.append(f"{name}({', '.join(parts)},)")
-    state = "".join(f"y[{n}], " for n in range(len(slots.core)))
+    n, ledger = len(slots.core), len(slots.ledger)
+    state = _listed("y", range(n))
     switches = ", ".join(f"p[{n}] != 0.0" for n in range(SWITCHES))
-    call = f"p[{SWITCHES}] + x, {state}({switches}), ({', '.join(groups)},)"
-
-    def filled(name, count):
-        return "".join(f"{name}[{n}], " for n in range(count))
-
-    text = f"""
-@cfunc("void(float64, CPointer(float64), CPointer(float64), CPointer(float64))", cache=CACHED,
-       **OPTIONS)
+    time = f"p[{SWITCHES}] + " + (f"y[{n}]" if inspiral else "x")
+    call = f"{time}, {state}({switches}), ({', '.join(groups)},)"
+    rates = f"    ({_listed('out', range(n + ledger))}) = rates({call})"
+    if inspiral:
+        rates = f"""    there = rates({call})
+    pace = -1.0 / shrinking_rate({_listed("y", range(3))}
+        {"y[3]" if pair.plan.eccentric else "0.0"}, {_listed("there", range(3))}
+        {"there[3]" if pair.plan.eccentric else "0.0"})
+    ({_listed("out", [*range(n), *range(n + 1, n + 1 + ledger)])}) = there
+    for slot in range({n + 1 + ledger}):
+        out[slot] *= pace
+    out[{n}] = pace"""
+    return f"""
+@cfunc("void(float64{", CPointer(float64)" * 3})", cache=CACHED, **OPTIONS)
 def rates_at(x, y, numbers, out):
     p = carray(numbers, ({place},))
-    ({filled("out", len(slots.core) + len(slots.ledger))}) = rates({call})
+{rates}
 
 
-@cfunc("void(float64, CPointer(float64), CPointer(float64), CPointer(float64), CPointer(float64))",
-       cache=CACHED, **OPTIONS)
+@cfunc("void(float64{", CPointer(float64)" * 4})", cache=CACHED, **OPTIONS)
 def look(x, y, numbers, seen, read):
     p = carray(numbers, ({place},))
     values = quantities({call})
-    ({filled("seen", len(slots.quantities))}) = values
-    ({filled("read", len(slots.gauges))}) = gauges(values)
-"""
-    return text, classes
+    ({_listed("seen", range(len(slots.quantities)))}) = values
+    ({_listed("read", range(len(slots.gauges)))}) = gauges(values)
+""", classes
+
+
+def _listed(name, places):
+    return "".join(f"{name}[{place}], " for place in places)
 
 
 def _compiled(pair, text, classes, user):
@@ -156,13 +171,15 @@ def _compiled(pair, text, classes, user):
     namespace = {**user, **classes, "cfunc": numba.cfunc, "carray": numba.carray}
     exec(compile(pair.equations, "<equations>", "exec"), namespace)
     done = {}
-    for name in ("rates", "quantities", "gauges"):
+    namespace["shrinking_rate"] = shrinking_rate
+    for name in ("rates", "quantities", "gauges", "shrinking_rate"):
         namespace[name] = jitted(namespace[name], done)
     advance = _advance()
     try:
         module = _run(text, [pair.equations, *_sources(user.values())], namespace)
     except numba.core.errors.NumbaError as error:
-        return CannotCompile(str(error).strip().partition("\n")[0])
+        lines = [line for line in str(error).splitlines() if line and "Failed in" not in line]
+        return CannotCompile(lines[0])
     return Engine(advance, module.rates_at.address, module.look.address, module)
 
 

@@ -151,12 +151,12 @@ class Run:
         return None
 
     def _course(self, stretch):
-        if self.compiled and not self.inspiral:
+        if self.compiled:
             from evolve.integrate.compiled_course import CompiledCourse
             from evolve.integrate.engine import CannotCompile, engine_of
 
             try:
-                self.engine = self.engine or engine_of(self.pair, self._compiling)
+                self.engine = self.engine or engine_of(self.pair, self.inspiral, self._compiling)
                 return CompiledCourse(self, stretch, self.watches, self.engine)
             except CannotCompile as error:
                 self.compiled = False
