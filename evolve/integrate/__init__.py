@@ -1,7 +1,9 @@
 """Integration of a pair's equations, chapter by chapter, with solve_ivp."""
 
+from functools import cache
 
-def integrate(config, progress=None):
+
+def integrate(config, progress=None, many=False):
     """The history of one config.
 
     Parameters
@@ -9,6 +11,9 @@ def integrate(config, progress=None):
     config : evolve.config.Config
     progress : callable, optional
         Called as progress(time, end_time, regime, steps) after every accepted step.
+    many : bool
+        Whether it is one of so many that a compilation pays: then the engine `auto` is the
+        compiled one, where numba is there.
 
     Returns
     -------
@@ -21,13 +26,17 @@ def integrate(config, progress=None):
     ConfigError
         If the pair cannot start as written.
     """
-    from evolve.errors import ConfigError
     from evolve.integrate.assemble import history_of
     from evolve.integrate.run import Run
     from evolve.system.pair import Pair
 
-    if config.values["numerics"]["engine"] == "compiled":
-        raise ConfigError(
-            f'{config.name}: numerics.engine = "compiled": is not there yet; allowed: auto, plain'
-        )
-    return history_of(Run(Pair(config), progress).run())
+    engine = config.values["numerics"]["engine"]
+    compiled = engine == "compiled" or engine == "auto" and many and _has_numba()
+    return history_of(Run(Pair(config), progress, compiled).run())
+
+
+@cache
+def _has_numba():
+    from importlib.util import find_spec
+
+    return find_spec("numba") is not None

@@ -58,9 +58,11 @@ class Run:
     pair : evolve.system.pair.Pair
     progress : callable or None
         Called as progress(time, end_time, regime, steps) after every accepted step.
+    compiled : bool
+        Whether stretches go to the compiled engine, where it can take them.
     """
 
-    def __init__(self, pair, progress=None):
+    def __init__(self, pair, progress=None, compiled=False):
         values = pair.config.values
         self.pair, self.progress = pair, progress
         self.numerics, self.end = values["numerics"], values["end"]
@@ -77,6 +79,8 @@ class Run:
         self.idle = 0
         self.opening_event = ""
         self.ignored, self.kicked = set(), set()
+        self._asked, self._quantities = (None,) * 4, None
+        self.compiled, self.engine, self.warnings = compiled, None, []
 
     # What watches and chapters ask -----------------------------------------------------
 
@@ -96,8 +100,12 @@ class Run:
         return next((f"overflow_{c}" for c in "AB" if self.in_contact[c]), "detached")
 
     def now(self):
-        """The quantities at the present state."""
-        return self.pair.quantities(self.time, self.state.tolist(), self.switches)
+        """The quantities at the present state, computed once."""
+        asked = (self.pair, self.time, self.state, self.switches)
+        if any(one is not other for one, other in zip(asked, self._asked, strict=True)):
+            self._asked = asked
+            self._quantities = self.pair.quantities(self.time, self.state.tolist(), self.switches)
+        return self._quantities
 
     def _inspirals(self):
         """True if only waves act and no star can fill its lobe: then -ln a leads."""
@@ -136,11 +144,28 @@ class Run:
         bound = stretch.bound(self.end["time"])
         if bound <= stretch.start:
             return self._finish("time")
-        self.course = Course(self, stretch, watches_for(self))
+        self.course = self._course(stretch)
         self.stretches += 1
         message = self.course.follow(bound)
         self._close(message)
         return None
+
+    def _course(self, stretch):
+        if self.compiled:
+            from evolve.integrate.compiled_course import CompiledCourse
+            from evolve.integrate.engine import CannotCompile, engine_of
+
+            try:
+                self.engine = self.engine or engine_of(self.pair, self.inspiral, self._compiling)
+                return CompiledCourse(self, stretch, self.watches, self.engine)
+            except CannotCompile as error:
+                self.compiled = False
+                self.warnings.append(f"the equations run plain, for they do not compile: {error}")
+        return Course(self, stretch, self.watches)
+
+    def _compiling(self):
+        if self.progress:
+            self.progress(self.time, self.end["time"], "compiling the equations", 0)
 
     def _close(self, message):
         """Take over what a course brought: noted events, its last state, why it stopped."""
@@ -149,7 +174,7 @@ class Run:
             self._mark(watch.name, watch.component, row, residual)
         if course.fired:
             watch, row, residual = course.fired
-            last = self.recorder.rows[row]
+            last = self.recorder[row]
             self.time, self.state = last.time, last.state
             self.idle = self.idle + 1 if row == course.first_row else 0
             self._act(watch, row, residual)
@@ -158,7 +183,7 @@ class Run:
         elif message:
             self._finish("failed", message)
         else:
-            self.time, self.state = self.recorder.rows[-1].time, self.recorder.rows[-1].state
+            self.time, self.state = self.recorder[-1].time, self.recorder[-1].state
             self._finish("merger" if self.inspiral else "time")
 
     def _settle_at_once(self):
@@ -167,10 +192,11 @@ class Run:
             if self.idle > CHATTER:
                 return self._finish("failed", "events follow each other without time passing")
             readings = self.pair.gauges(self.now())
+            self.watches = watches_for(self)
             past = next(
                 (
                     watch
-                    for watch in watches_for(self)
+                    for watch in self.watches
                     if watch.terminal and watch.at_once
                     and watch.direction * (readings[watch.gauge] - watch.level) > 0.0
                 ),
@@ -310,6 +336,7 @@ class Run:
         }  # fmt: skip
         config = replace(self.pair.config, values=values)
         self.pair = Pair(config, {s: self.pair.star_keys[s] for s in (other, *kept)}, old)
+        self.engine = None
         self.acts.append(Act(len(self.recorder), self.pair))
         self.switches = self.pair.first_switches()
         self.in_contact = {"A": False, "B": False}
@@ -358,10 +385,10 @@ class Run:
         self.opening_event = ""
         quantities = self.now()
         row = self.recorder.add(self.time, self.state, quantities)
-        self.time = self.recorder.rows[row].time
+        self.time = self.recorder[row].time
         if self.openings and self.openings[-1].row < row - 1 and self.acts[-1].row < row:
             gauge = self.pair.layout.gauges.index("period_rate")
-            before = self.pair.gauges(self.recorder.rows[row - 1].quantities)[gauge]
+            before = self.pair.gauges(self.recorder[row - 1].quantities)[gauge]
             after = self.pair.gauges(quantities)[gauge]
             if before < 0.0 < after:
                 self._mark("period_minimum", "", row)

@@ -21,13 +21,17 @@ class Outcome(NamedTuple):
     error: str
 
 
-def run_many(configs, workers=1, reduce=None, block=8):
+def run_many(configs, workers=1, reduce=None, block=8, engine="auto"):
     """Histories of many configs, in their order.
 
     Parameters
     ----------
     configs : iterable of Config, dict or path
-        Read as it is needed; may be endless.
+        Read as it is needed; may be endless. Those that differ in values only are compiled
+        once.
+    engine : str
+        "auto": as each config has it, and if that says nothing, compiled where numba is there;
+        "compiled" or "plain". Never chosen by the number of workers.
     workers : int
         Processes. The results do not depend on it.
     reduce : callable, optional
@@ -47,14 +51,16 @@ def run_many(configs, workers=1, reduce=None, block=8):
     """
     if workers < 1:
         raise ConfigError(f"workers = {workers}: allowed: 1 or more")
+    if engine not in ENGINES:
+        raise ConfigError(f"engine = {engine!r}: allowed: {', '.join(ENGINES)}")
     blocks = _blocks(configs, block if workers > 1 else 1)
     if workers == 1:
         for first, parts in blocks:
-            yield from _run_block(first, parts, reduce)
+            yield from _run_block(first, parts, engine, reduce)
         return
     with ProcessPoolExecutor(workers, initializer=quiet_worker) as pool:
         yield from in_order(
-            (pool.submit(_run_block, first, parts, reduce) for first, parts in blocks),
+            (pool.submit(_run_block, first, parts, engine, reduce) for first, parts in blocks),
             AHEAD * workers,
         )
 
@@ -98,16 +104,18 @@ def _portable(config):
     return config
 
 
-def _run_block(first, parts, reduce):
-    return [_run_one(first + place, part, reduce) for place, part in enumerate(parts)]
+def _run_block(first, parts, engine, reduce):
+    return [_run_one(first + place, part, engine, reduce) for place, part in enumerate(parts)]
 
 
-def _run_one(index, part, reduce):
+def _run_one(index, part, engine, reduce):
     from evolve.config.read import config_of_parts
 
     try:
         config = config_of_parts(*part) if isinstance(part, tuple) else read_config(part)
-        history = integrate(config)
+        if engine != "auto":
+            config = config.with_values({"numerics.engine": engine})
+        history = integrate(config, many=True)
         return Outcome(index, reduce(history) if reduce else history, "")
     except EvolveError as error:
         return Outcome(index, None, str(error))

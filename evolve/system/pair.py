@@ -28,9 +28,21 @@ class Switches(NamedTuple):
     braking_B: bool = False
 
 
+_plans = {}
+
+
 @lru_cache(maxsize=64)
 def _code(text):
     return compile(text, "<equations>", "exec")
+
+
+def _written(plan):
+    """Layout, equations and class of quantities of a plan: made once for configs of one kind."""
+    key = plan._replace(components=tuple(plan.components.items()))
+    if key not in _plans:
+        slots = layout(plan)
+        _plans[key] = slots, write(plan), namedtuple("Quantities", slots.quantities)
+    return _plans[key]
 
 
 class Pair:
@@ -75,10 +87,8 @@ class Pair:
         }
         self.laws = choose_laws(config)
         self.plan, self.functions = plan_of(config, self.laws)
-        self.layout = layout(self.plan)
-        self.parameters = parameters_of(config, self.laws, self.plan, self.star_keys)
-        self.equations = write(self.plan)
-        self.Quantities = namedtuple("Quantities", self.layout.quantities)
+        self.layout, self.equations, self.Quantities = _written(self.plan)
+        self.parameters = parameters_of(config, self.laws, self.layout, self.star_keys)
         namespace = {
             name: function
             for name, function in self.functions.items()
