@@ -30,11 +30,13 @@ class Task(NamedTuple):
     parts      (raw, files, folder, name, allow_code) of the base config
     keep       tuple of Result
     histories  whether the archive of each history is wanted too
+    many       whether there are so many points that a compilation pays
     """
 
     parts: tuple
     keep: tuple
     histories: bool
+    many: bool
 
 
 class Row(NamedTuple):
@@ -181,7 +183,7 @@ def run_block(task, indices, changes):
 def run_point(task, base, index, change):
     """The Row of one point."""
     try:
-        history = uninterrupted(integrate(base.with_values(change)))
+        history = uninterrupted(integrate(base.with_values(change), many=task.many))
     except EvolveError as error:
         return Row(index, [float("nan")] * len(task.keep), REFUSED, clipped(str(error)), b"")
     values = [value_of(history, result) for result in task.keep]

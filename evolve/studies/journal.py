@@ -12,7 +12,6 @@ import time
 import zlib
 from pathlib import Path
 
-from evolve import __version__
 from evolve.errors import ConfigError
 
 MESSAGE = 240
@@ -36,7 +35,7 @@ class Journal:
     ----------
     path : str or Path
     digest : str
-        Of the study.
+        Of the study, and of all that its bits rest on.
     n_values : int
         Numbers a record holds.
     replace : bool
@@ -51,7 +50,7 @@ class Journal:
     def __init__(self, path, digest, n_values, replace=False):
         self.path, self.layout = Path(path), struct.Struct(f"<q{n_values}di{MESSAGE}s")
         self.size = self.layout.size + 4
-        self.header = f"evolve-journal 2 {__version__} {digest} {n_values}\n".encode()
+        self.header = f"evolve-journal 2 {digest} {n_values}\n".encode()
         self.file = open(self.path, "a+b")
         self._lock()
         self.synced = time.monotonic()

@@ -1,5 +1,6 @@
 """The archive of a study: arrays over its axes, axes as dimension scales."""
 
+from importlib.util import find_spec
 from typing import NamedTuple
 
 import numpy as np
@@ -7,6 +8,7 @@ import numpy as np
 from evolve.archive.digest import digest_of
 from evolve.archive.paths import check_output, whole_file
 from evolve.errors import ArchiveError
+from evolve.history.history import present_versions
 from evolve.studies.results import OUTCOMES
 
 FORMAT, LAYOUT = "evolve-study", 1
@@ -74,6 +76,11 @@ def _numeric(axis):
     return all(isinstance(value, (int, float)) for value in axis.values)
 
 
+def study_versions():
+    """Versions of what computes the histories of a study here; numba's only if it is there."""
+    return dict(present_versions(*["numba"] * (find_spec("numba") is not None)))
+
+
 def write_study(result, path, replace=False):
     """Write a study's archive, whole or not at all.
 
@@ -102,6 +109,9 @@ def _write(file, result):
 
     file.attrs["format"], file.attrs["layout"] = FORMAT, np.int64(LAYOUT)
     file.attrs["evolve_version"] = __version__
+    versions = study_versions() | {"h5py": h5py.__version__, "HDF5": h5py.version.hdf5_version}
+    for name, version in versions.items():
+        file.attrs[f"{name}_version"] = version
     file.attrs["title"], file.attrs["note"] = result.title, result.note
     file.attrs["study_digest"] = result.digest
     file.create_dataset("study", data=result.text, dtype=h5py.string_dtype())

@@ -1,16 +1,24 @@
 """A sweep: one history a point of a study, what is kept of it, one archive."""
 
+import json
+from hashlib import sha256
 from itertools import islice
 from pathlib import Path
 
 import numpy as np
 
+from evolve import __version__
 from evolve.archive.paths import check_output, whole_file
 from evolve.errors import ConfigError
 from evolve.studies.blocks import REFUSED, Pace, Task, computed
 from evolve.studies.journal import Journal
 from evolve.studies.study import read_study
-from evolve.studies.study_archive import StudyResult, write_study
+from evolve.studies.study_archive import StudyResult, study_versions, write_study
+
+
+MANY = 1000
+"""From so many points on a study takes the compiled engine, where there is one: its first
+compilation lasts as long as some hundred histories in plain Python."""
 
 
 def sweep(study, output=None, workers=1, cluster=None, replace=False, progress=None):
@@ -53,7 +61,7 @@ def sweep(study, output=None, workers=1, cluster=None, replace=False, progress=N
             found.note(*row[:4])
         return found.result()
     check_output(output, replace)
-    with Journal(journal_path(output), study.digest, len(study.keep), replace) as journal:
+    with Journal(journal_path(output), journal_digest(study), len(study.keep), replace) as journal:
         _resumed(study, found, journal, Path(output), (workers, cluster), progress)
         result = found.result()
         write_study(result, output, replace)
@@ -74,6 +82,12 @@ def _resumed(study, found, journal, output, where, progress):
                 part.write_bytes(row.image)
         found.note(*row[:4])
         journal.add(*row[:4])
+
+
+def journal_digest(study):
+    """Of the study and of what its bits rest on: a journal of other versions does not go on."""
+    versions = json.dumps([__version__, study_versions()], sort_keys=True)
+    return sha256(f"{study.digest} {versions}".encode()).hexdigest()
 
 
 def journal_path(output):
@@ -124,7 +138,7 @@ class _Found:
 def _rows(study, left, workers, cluster, progress):
     base, pace = study.base, Pace()
     parts = (base.raw, base.files, base.folder, base.name, base.allow_code)
-    task = Task(parts, study.keep, study.histories)
+    task = Task(parts, study.keep, study.histories, study.size >= MANY)
     done = study.size - len(left)
     if progress:
         progress(done)

@@ -50,13 +50,15 @@ def engine_alone(path):
     """Seconds that the histories of a study take without it; its configs are read before."""
     from evolve.integrate import integrate
     from evolve.studies.study import read_study
+    from evolve.studies.sweep import MANY
 
     found = read_study(path)
-    total = 0.0
+    many, total = found.size >= MANY, 0.0
+    integrate(found.base, many=many)  # a compilation is not counted
     for change in found.points(range(found.size)):
         config = found.base.with_values(change)
         start = perf_counter()
-        integrate(config)
+        integrate(config, many=many)
         total += perf_counter() - start
     return total
 
@@ -72,15 +74,15 @@ def peak(path, output):
     done = subprocess.run(command, check=True, capture_output=True, text=True)
     return float(done.stdout), perf_counter() - start
 
-def main(points=100):
+def main(points=2000):
     from evolve.studies.sweep import sweep
 
     with tempfile.TemporaryDirectory() as name:
         folder = Path(name)
         real = study(folder, REAL, "real", config=CONFIG, count=points)
+        alone = engine_alone(real)  # also fills the cache of machine code
         one = seconds(lambda: sweep(real, folder / "one.h5"))
         two = seconds(lambda: sweep(real, folder / "two.h5", workers=2))
-        alone = engine_alone(real)
         print(f"{points} histories of a red dwarf, one process over two   {one / two:6.2f}")
         print(f"{points} histories of a red dwarf, sweep over engine      {one / alone:6.2f}")
         few = study(folder, CHEAP, "few", count=10)

@@ -17,7 +17,7 @@ from evolve.studies.journal import Journal
 from evolve.studies.results import OUTCOMES
 from evolve.studies.study import read_study
 from evolve.studies.study_archive import open_study
-from evolve.studies.sweep import journal_path, sweep
+from evolve.studies.sweep import journal_digest, journal_path, sweep
 
 WAVES = """
     [base]
@@ -51,7 +51,7 @@ def start(study, output, *more):
 
 
 def opened(output, study):
-    return Journal(journal_path(output), study.digest, len(study.keep))
+    return Journal(journal_path(output), journal_digest(study), len(study.keep))
 
 
 def records(output):
@@ -172,6 +172,6 @@ def test_two_processes_do_not_work_on_one_study(tmp_path, monkeypatch):
     monkeypatch.setattr("evolve.studies.journal.PATIENCE", 0.1)
     study = read_study(write(tmp_path, FEW))
     output = tmp_path / "x.h5"
-    with Journal(journal_path(output), study.digest, len(study.keep)):
+    with Journal(journal_path(output), journal_digest(study), len(study.keep)):
         with pytest.raises(ConfigError, match="another process"):
             sweep(study, output)
