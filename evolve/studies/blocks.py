@@ -9,15 +9,14 @@ import threading
 from concurrent.futures import FIRST_COMPLETED, BrokenExecutor, ProcessPoolExecutor, wait
 from contextlib import contextmanager
 from time import perf_counter
-from typing import NamedTuple
+from typing import Any, Callable, NamedTuple
 
-from evolve.archive.write import archive_bytes
 from evolve.config.read import config_of_parts
 from evolve.errors import EvolveError, MachineError, MissingExtra
 from evolve.integrate import integrate
 from evolve.studies.journal import clipped
 from evolve.studies.many import AHEAD, quiet_worker
-from evolve.studies.results import OUTCOMES, uninterrupted, value_of
+from evolve.studies.results import OUTCOMES, uninterrupted
 
 SECONDS, LARGEST = 0.5, 512
 """Time that a block should take, and the most points it may have."""
@@ -27,27 +26,24 @@ REFUSED = OUTCOMES.index("refused")
 class Task(NamedTuple):
     """What every worker must know of a study.
 
-    parts      (raw, files, folder, name, allow_code) of the base config
-    keep       tuple of Result
-    histories  whether the archive of each history is wanted too
-    many       whether there are so many points that a compilation pays
+    parts   (raw, files, folder, name, allow_code) of the base config
+    reduce  history -> what is kept of it; a function of a module, or a partial of one
+    many    whether there are so many points that a compilation pays
     """
 
     parts: tuple
-    keep: tuple
-    histories: bool
+    reduce: Callable
     many: bool
 
 
 class Row(NamedTuple):
-    """One point: its number, its results, its end (by OUTCOMES), its reason if it failed, the
-    bytes of its history's archive if that is wanted."""
+    """One point: its number, what is kept of its history (None if it has none), its end (by
+    OUTCOMES), its reason if it failed."""
 
     index: int
-    values: list
+    value: Any
     code: int
     message: str
-    image: bytes
 
 
 class Pace:
@@ -90,7 +86,7 @@ def computed(task, blocks, pace, workers=1, cluster=None):
             pace.heed(seconds, len(rows))
             yield rows
         return
-    with _executor(workers, cluster) as (pool, lanes):
+    with executor(workers, cluster) as (pool, lanes):
         waiting = set()
         for block in blocks:
             waiting.add(pool.submit(run_block, task, *block))
@@ -110,8 +106,16 @@ def _taken(done, pace):
 
 
 @contextmanager
-def _executor(workers, cluster):
-    """(executor, number of lanes); what is not begun is dropped after a fault."""
+def executor(workers, cluster=None):
+    """(executor, number of lanes) of processes or of a cluster's workers.
+
+    What is not begun is dropped after a fault.
+
+    Raises
+    ------
+    MachineError
+        As `computed`.
+    """
     if cluster:
         with _client(cluster) as client, _failing("the cluster"):
             lanes = max(sum(client.nthreads().values()), 1)
@@ -172,7 +176,7 @@ def _end_with_parent():
 def run_block(task, indices, changes):
     """(seconds, rows) of some points; what a worker does.
 
-    A point that makes no config, or whose pair cannot start, is "refused"; its values are NaN.
+    A point that makes no config, or whose pair cannot start, is "refused" and has no value.
     """
     start = perf_counter()
     base = config_of_parts(*task.parts)
@@ -185,8 +189,11 @@ def run_point(task, base, index, change):
     try:
         history = uninterrupted(integrate(base.with_values(change), many=task.many))
     except EvolveError as error:
-        return Row(index, [float("nan")] * len(task.keep), REFUSED, clipped(str(error)), b"")
-    values = [value_of(history, result) for result in task.keep]
+        return Row(index, None, REFUSED, clipped(str(error)))
     message = "" if history.complete else clipped(history.message)
-    image = archive_bytes(history) if task.histories else b""
-    return Row(index, values, OUTCOMES.index(history.outcome), message, image)
+    return Row(index, task.reduce(history), OUTCOMES.index(history.outcome), message)
+
+
+def parts_of(config):
+    """A config in what can be sent to another process."""
+    return config.raw, config.files, config.folder, config.name, config.allow_code

@@ -1,6 +1,7 @@
 """A sweep: one history a point of a study, what is kept of it, one archive."""
 
 import json
+from functools import partial
 from hashlib import sha256
 from itertools import islice
 from pathlib import Path
@@ -9,12 +10,13 @@ import numpy as np
 
 from evolve import __version__
 from evolve.archive.paths import check_output, whole_file
+from evolve.archive.write import archive_bytes
 from evolve.errors import ConfigError
-from evolve.studies.blocks import REFUSED, Pace, Task, computed
+from evolve.studies.blocks import REFUSED, Pace, Task, computed, parts_of
 from evolve.studies.journal import Journal
+from evolve.studies.results import value_of
 from evolve.studies.study import read_study
 from evolve.studies.study_archive import StudyResult, study_versions, write_study
-
 
 MANY = 1000
 """From so many points on a study takes the compiled engine, where there is one: its first
@@ -58,7 +60,7 @@ def sweep(study, output=None, workers=1, cluster=None, replace=False, progress=N
         if study.histories:
             raise ConfigError("keep.histories: histories are written beside an output; give one")
         for row in _rows(study, found.left(), workers, cluster, progress):
-            found.note(*row[:4])
+            found.note(row.index, *_numbers(row, study))
         return found.result()
     check_output(output, replace)
     with Journal(journal_path(output), journal_digest(study), len(study.keep), replace) as journal:
@@ -77,11 +79,18 @@ def _resumed(study, found, journal, output, where, progress):
         folder.mkdir(exist_ok=True)
         found.forget(lambda index: not _history_path(folder, index).is_file())
     for row in _rows(study, found.left(), *where, progress):
-        if row.image:
+        if study.histories and row.value:
             with whole_file(_history_path(folder, row.index)) as part:
-                part.write_bytes(row.image)
-        found.note(*row[:4])
-        journal.add(*row[:4])
+                part.write_bytes(row.value[1])
+        record = row.index, *_numbers(row, study)
+        found.note(*record)
+        journal.add(*record)
+
+
+def _numbers(row, study):
+    """(results, end, reason) of a row; NaN throughout where there is no history."""
+    values = row.value[0] if row.value else [float("nan")] * len(study.keep)
+    return values, row.code, row.message
 
 
 def journal_digest(study):
@@ -136,9 +145,9 @@ class _Found:
 
 
 def _rows(study, left, workers, cluster, progress):
-    base, pace = study.base, Pace()
-    parts = (base.raw, base.files, base.folder, base.name, base.allow_code)
-    task = Task(parts, study.keep, study.histories, study.size >= MANY)
+    pace = Pace()
+    reduce = partial(kept, keep=study.keep, histories=study.histories)
+    task = Task(parts_of(study.base), reduce, study.size >= MANY)
     done = study.size - len(left)
     if progress:
         progress(done)
@@ -147,6 +156,12 @@ def _rows(study, left, workers, cluster, progress):
         done += len(rows)
         if progress:
             progress(done)
+
+
+def kept(history, keep, histories):
+    """(results, bytes of the history's archive if it is wanted) of one history."""
+    values = [value_of(history, result) for result in keep]
+    return values, archive_bytes(history) if histories else b""
 
 
 def _blocks(study, indices, pace):
