@@ -50,13 +50,7 @@ class StudyResult(NamedTuple):
     @classmethod
     def of(cls, study, values, codes, messages):
         """From rows by the points' numbers."""
-        shape = study.shape
-        scales = [
-            Scale(axis.key, axis.numbers if axis.unit or _numeric(axis) else np.array(axis.values), axis.unit)
-            for axis in study.axes
-        ]
-        if study.draws:
-            scales.append(Scale("draw", np.arange(study.draws.count), ""))
+        shape, scales = study.shape, scales_of(study)
         return cls(
             scales,
             {r.name: values[:, n].reshape(shape) for n, r in enumerate(study.keep)},
@@ -70,6 +64,15 @@ class StudyResult(NamedTuple):
     def failed(self):
         """Number of points without an answer."""
         return len(self.messages)
+
+
+def scales_of(study):
+    """The axes of a study as list of Scale, the draws last."""
+    scales = [
+        Scale(axis.key, axis.numbers if axis.unit or _numeric(axis) else np.array(axis.values), axis.unit)
+        for axis in study.axes
+    ]
+    return scales + ([Scale("draw", np.arange(study.draws.count), "")] if study.draws else [])
 
 
 def _numeric(axis):

@@ -7,7 +7,8 @@ import pytest
 
 import evolve
 from evolve.errors import ConfigError
-from evolve.studies.origin import matches, origin, read_observed
+from evolve.studies.observed import matches, read_observed
+from evolve.studies.origin import origin
 
 PAIR = """
     [base]
@@ -58,7 +59,7 @@ def test_synthetic_starts_are_recovered_within_one_per_cent(tmp_path, period, ma
         f'mass_B = ["{epoch["mass_B"]!r} Msun", "0.005 Msun"]\n    '
         f'mass_A = ["0.06 Msun", "0.001 Msun"]'
     )
-    best = origin(study(tmp_path, observed))[0]
+    best = origin(study(tmp_path, observed)).origins[0]
     assert best.fits
     assert best.start["orbit.period"] == pytest.approx(period, rel=0.01)
     assert best.start["B.mass"] == pytest.approx(mass, rel=0.01)
@@ -71,15 +72,15 @@ def test_synthetic_starts_are_recovered_within_one_per_cent(tmp_path, period, ma
 def test_both_branches_before_and_after_the_period_minimum(tmp_path):
     """10 min happens twice: while waves shrink the pair, and again when transfer widens it."""
     found = origin(study(tmp_path, 'period = ["10 min", "0.2 min"]\n    mass_B = ["0.85 Msun", "0.06 Msun"]'))
-    branches = {entry.match.branch for entry in found if entry.fits}
+    branches = {entry.match.branch for entry in found.fitting}
     assert ("detached", 0, "falling") in branches
     assert ("overflow_A", 1, "rising") in branches
 
 
 def test_when_nothing_fits_it_says_what_came_nearest(tmp_path):
     found = origin(study(tmp_path, 'period = ["10 min", "0.1 min"]\n    mass_A = ["0.4 Msun", "0.01 Msun"]'))
-    assert found and not any(entry.fits for entry in found)
-    assert found[0].match.deviations["mass_A"] < -3.0
+    assert found.origins and not found.fitting
+    assert found.origins[0].match.deviations["mass_A"] < -3.0
 
 
 def test_limits_and_asymmetric_errors():
