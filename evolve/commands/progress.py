@@ -59,3 +59,22 @@ def counting_bar(total, what, quiet=False):
             bar.initial = bar.n = bar.last_print_n = done
 
         yield progress
+
+
+@contextmanager
+def stages_bar(quiet=False):
+    """A progress callback for work in stages: called with (done, total, what is counted)."""
+    if quiet or not sys.stderr.isatty():
+        yield None
+        return
+    from tqdm import tqdm
+
+    with tqdm(total=0, delay=1.0, leave=False) as bar:
+
+        def progress(done, total, what):
+            if bar.unit != f" {what}":
+                bar.unit = f" {what}"
+                bar.reset(total)
+            bar.update(done - bar.n)
+
+        yield progress

@@ -108,12 +108,14 @@ def _observed(column, written):
 # Along one history ------------------------------------------------------------------------
 
 
-def matches(history, observed):
-    """The best match of each branch of a history, list of Match."""
+def matches(history, observed, only=None):
+    """The best match of each branch of a history, or of `only` one, list of Match."""
     if any(item.column not in history.columns for item in observed):
         return []
     best = {}
     for first, last, branch in _branches(history):
+        if only not in (None, branch):
+            continue
         rows, shares = _fine(first, last)
         total = _mismatch(history, observed, rows, shares)
         place = int(np.argmin(total))

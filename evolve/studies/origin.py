@@ -151,20 +151,21 @@ def _each(search, minima, workers, cluster):
 
 
 def _distinct(origins):
-    """Without those that refined to the same start on the same branch."""
+    """Without those that lie, on the same branch, in the region of a better one."""
     kept = []
     for entry in origins:
-        same = any(
-            other.match.branch == entry.match.branch and _close(other.start, entry.start)
-            for other in kept
-        )
-        if not same:
+        if not any(_same_region(other, entry) for other in kept):
             kept.append(entry)
     return kept
 
 
-def _close(one, other):
-    return all(
-        abs(one[k] - other[k]) <= 0.01 * abs(one[k]) if isinstance(one[k], float) else one[k] == other[k]
-        for k in one
-    )
+def _same_region(better, entry):
+    if better.match.branch != entry.match.branch or better.fits != entry.fits:
+        return False
+    for key, value in entry.start.items():
+        best = better.start[key]
+        low, high = better.ranges.get(key, (best, best))
+        near = isinstance(best, float) and abs(value - best) <= 0.01 * abs(best)
+        if not (near or value == best or isinstance(best, float) and low <= value <= high):
+            return False
+    return True

@@ -148,12 +148,11 @@ class _Valley:
             history = integrate(self.base.with_values(self.changes(x)), many=True)
         except EvolveError:
             return None, None
-        found = matches(uninterrupted(history), self.search.observed)
-        match = next((m for m in found if m.branch == self.branch), None)
-        if match is None:
+        found = matches(uninterrupted(history), self.search.observed, self.branch)
+        if not found:
             return None, None
         columns = ["time", *(item.column for item in self.search.observed)]
-        return match, {name: history[name].astype(np.float32) for name in columns}
+        return found[0], {name: history[name].astype(np.float32) for name in columns}
 
     def mismatch(self, x):
         """Sum of squared deviations; outside the axes it grows with the distance."""
