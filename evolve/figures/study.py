@@ -86,9 +86,12 @@ def _map(scales, values, failed, label):
     mesh = axis.pcolormesh(
         x, y, np.ma.masked_invalid(values.T), cmap="cividis", norm=norm, shading="nearest"
     )
-    figure.colorbar(mesh, ax=axis, label=label)
+    bar = figure.colorbar(mesh, ax=axis, label=label)
     if min(values.shape) > 2 and np.isfinite(values).sum() > 3 and np.nanmax(values) > np.nanmin(values):
-        axis.contour(x, y, np.ma.masked_invalid(values.T), colors="white", linewidths=0.5, norm=norm)
+        lines = axis.contour(
+            x, y, np.ma.masked_invalid(values.T), colors="white", linewidths=0.5, norm=norm
+        )
+        bar.add_lines(lines)
     places = np.nonzero(failed)
     axis.plot(x[places[0]], y[places[1]], "x", color=SERIES[1], ms=4)
     if failed.any():
