@@ -36,15 +36,18 @@ results = ["contact.time", "end.period", "max.overflow_A", "ledger.braking"]
 """
 CONFIG = Path(__file__).parents[2] / "configs" / "red_dwarf.toml"
 
+
 def study(folder, text, name, **values):
     path = folder / f"{name}.toml"
     path.write_text(text.format(**values))
     return path
 
+
 def seconds(action):
     start = perf_counter()
     action()
     return perf_counter() - start
+
 
 def engine_alone(path):
     """Seconds that the histories of a study take without it; its configs are read before."""
@@ -62,6 +65,7 @@ def engine_alone(path):
         total += perf_counter() - start
     return total
 
+
 def peak(path, output):
     """Peak resident memory [MB] of a sweep in a process of its own, and its seconds."""
     code = (
@@ -74,7 +78,8 @@ def peak(path, output):
     done = subprocess.run(command, check=True, capture_output=True, text=True)
     return float(done.stdout), perf_counter() - start
 
-def main(points=2000):
+
+def main(points=4000):
     from evolve.studies.sweep import sweep
 
     with tempfile.TemporaryDirectory() as name:
@@ -93,6 +98,7 @@ def main(points=2000):
         print(f"100000 cheap points, sweep over engine               {took / alone:6.2f}")
         print(f"peak memory of 1000 and 100000 cheap points          {small:6.0f} and {large:.0f} MB")
         print(f"a point adds                                         {(large - small) / 0.099:6.0f} B")
+
 
 if __name__ == "__main__":
     main(*map(int, sys.argv[1:]))

@@ -50,6 +50,14 @@ BRAKED = """
 """
 
 
+SEARCH = WAVES[: WAVES.index("[vary]")] + """[vary]
+    "orbit.separation" = { from = "1 Rsun", to = "2 Rsun", count = 3 }
+    [observed]
+    time = ["0.1 Gyr", "1 Myr"]
+    period = ["3 h", "0.01 h"]
+"""
+
+
 def write(folder, text, name="study.toml"):
     path = folder / name
     path.write_text(textwrap.dedent(text))
@@ -82,15 +90,21 @@ def test_any_number_of_workers_gives_the_same_bytes(tmp_path):
 
 
 def test_a_dask_cluster_gives_the_same_bytes(tmp_path):
+    """A scheduler and two worker processes, as `dask scheduler` and `dask worker` start them."""
     distributed = pytest.importorskip("distributed")
     study = write(tmp_path, BRAKED.replace("count = 40", "count = 4"))
+    search = write(tmp_path, SEARCH, "search.toml")
     sweep(study, tmp_path / "here.h5")
     with distributed.LocalCluster(
         n_workers=2, threads_per_worker=1, processes=True, dashboard_address=None,
         host="127.0.0.1", silence_logs=50,
     ) as cluster:  # fmt: skip
-        sweep(study, tmp_path / "there.h5", cluster=cluster.scheduler_address)
+        address = cluster.scheduler_address
+        sweep(study, tmp_path / "there.h5", cluster=address)
+        there = evolve.origin(search, cluster=address).origins
     assert sha(tmp_path / "here.h5") == sha(tmp_path / "there.h5")
+    here = evolve.origin(search).origins
+    assert here and [entry.start for entry in here] == [entry.start for entry in there]
 
 
 def test_a_failing_point_is_recorded_and_the_rest_goes_on(tmp_path):
