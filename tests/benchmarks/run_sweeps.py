@@ -2,7 +2,8 @@
 
     python tests/benchmarks/run_sweeps.py [POINTS]
 
-Three ratios, each of times taken here in one run: one process over two; the sweep of POINTS
+Ratios, each of times taken here in one run: one process over two, for bare loops (what the
+machine gives at the moment) and for a sweep; the sweep of POINTS
 real histories over integrating the same configs one by one; and, for cheap points (a year of a
 detached pair), the same over a hundred thousand. Last, the peak memory of a sweep of a thousand
 and of a hundred thousand cheap points, each in a process of its own, and how much a point adds.
@@ -12,6 +13,7 @@ The hundred thousand take some minutes.
 import subprocess
 import sys
 import tempfile
+from concurrent.futures import ProcessPoolExecutor
 from pathlib import Path
 from time import perf_counter
 
@@ -66,6 +68,22 @@ def engine_alone(path):
     return total
 
 
+def spin(turns=30_000_000):
+    """Some seconds of nothing but arithmetic."""
+    total = 0
+    for turn in range(turns):
+        total += turn
+    return total
+
+
+def of_this_machine():
+    """One process over two for bare loops: what a sweep can reach here, beside whatever else runs."""
+    with ProcessPoolExecutor(2) as pool:
+        list(pool.map(spin, [1, 1]))
+        two = seconds(lambda: list(pool.map(spin, [30_000_000] * 4)))
+    return seconds(lambda: [spin() for _ in range(4)]) / two
+
+
 def peak(path, output):
     """Peak resident memory [MB] of a sweep in a process of its own, and its seconds."""
     code = (
@@ -88,6 +106,7 @@ def main(points=4000):
         alone = engine_alone(real)  # also fills the cache of machine code
         one = seconds(lambda: sweep(real, folder / "one.h5"))
         two = seconds(lambda: sweep(real, folder / "two.h5", workers=2))
+        print(f"bare loops, one process over two                        {of_this_machine():6.2f}")
         print(f"{points} histories of a red dwarf, one process over two   {one / two:6.2f}")
         print(f"{points} histories of a red dwarf, sweep over engine      {one / alone:6.2f}")
         few = study(folder, CHEAP, "few", count=10)
