@@ -58,7 +58,7 @@ def origin(study, workers=1, cluster=None, progress=None):
     cluster : str, optional
         Address of a dask.distributed scheduler, in place of processes here.
     progress : callable, optional
-        Called as progress(done, total, what): first of the grid's histories, then of regions.
+        Called as progress(done, total, what): what is "history", then "region".
 
     Returns
     -------
@@ -89,7 +89,7 @@ def _grid(study, observed, where, progress):
     """(branch -> array of mismatches over the axes, messages of failed points)."""
     maps, messages, done = {}, {}, 0
     task, pace = Task(parts_of(study.base), partial(matches, observed=observed), True), Pace()
-    progress(0, study.size, "grid")
+    progress(0, study.size, "history")
     for rows in computed(task, _blocks(study, pace), pace, *where):
         for row in rows:
             if row.message:
@@ -98,7 +98,7 @@ def _grid(study, observed, where, progress):
                 cells = maps.setdefault(match.branch, np.full(study.size, np.inf))
                 cells[row.index] = match.mismatch
         done += len(rows)
-        progress(done, study.size, "grid")
+        progress(done, study.size, "history")
     ordered = {branch: maps[branch].reshape(study.shape) for branch in sorted(maps)}
     return ordered, dict(sorted(messages.items()))
 

@@ -175,3 +175,19 @@ def test_two_processes_do_not_work_on_one_study(tmp_path, monkeypatch):
     with Journal(journal_path(output), journal_digest(study), len(study.keep)):
         with pytest.raises(ConfigError, match="another process"):
             sweep(study, output)
+
+
+def test_a_worker_that_is_killed_ends_the_study_with_a_sentence(tmp_path):
+    """As the system does when memory runs out; what was done is kept."""
+    study, output = write(tmp_path, WAVES), tmp_path / "x.h5"
+    process = start(study, output, "--workers", "2")
+    while records(output) < 5 and process.poll() is None:
+        time.sleep(0.005)
+    children = Path(f"/proc/{process.pid}/task/{process.pid}/children")
+    if not children.exists():
+        process.kill()
+        pytest.skip("this system does not tell a process's children")
+    os.kill(int(children.read_text().split()[0]), signal.SIGKILL)
+    _, said = process.communicate()
+    assert process.returncode == 3 and b"the same command goes on" in said
+    assert b"Traceback" not in said and records(output) >= 5
