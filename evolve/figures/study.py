@@ -33,7 +33,7 @@ def sweep_figure(result, name=None):
         raise ConfigError(f'no result "{name}"; there are {", ".join(result.values)}')
     values, failed = result.values[name], np.isnan(result.values[name])
     scales, keep = [], []
-    for place, scale in enumerate(result.scales):
+    for scale in result.scales:
         shown = len(scale.values) > 1 and (len(scales) < 2 and scale.key != "draw")
         if shown:
             scales.append(scale)
