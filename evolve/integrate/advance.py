@@ -50,8 +50,8 @@ def first_step(y, f, rtol, atol, span):
 def within(rates, look, x, y, f, h, p, room, state, quantities, gauges):
     """Fill the state a length h after (x, y), and what it shows: by a step of just that length,
     which is as accurate as the one it is part of; an interpolant over a long step is not."""
-    jacobian, matrix, pivots, u, right = room
-    step(rates, x, y, f, h, p, jacobian, matrix, pivots, u, right, state)
+    jacobian, matrix, order, u, right = room
+    step(rates, x, y, f, h, p, jacobian, matrix, order, u, right, state)
     observe(look, x + h, state, p, quantities, gauges)
 
 
@@ -193,7 +193,7 @@ def take_step(rates, x, y, f, p, h, end, control, room, new, memory):
         Length of the step taken: 0.0 if none is short enough.
     """
     rtol, atol, floor, longest = control
-    jacobian, matrix, pivots, u, right = room
+    jacobian, matrix, order, u, right = room
     memory[SPENT] += difference_jacobian(rates, x, y, f, p, floor, jacobian, right)
     rejected = False
     while True:
@@ -203,7 +203,7 @@ def take_step(rates, x, y, f, p, h, end, control, room, new, memory):
         elif x + 0.1 * h == x:
             return 0.0
         error = np.inf
-        if step(rates, x, y, f, h, p, jacobian, matrix, pivots, u, right, new):
+        if step(rates, x, y, f, h, p, jacobian, matrix, order, u, right, new):
             error = error_norm(y, new, u, rtol, atol)
         memory[SPENT] += STAGES - 1
         if error <= 1.0:
@@ -263,7 +263,7 @@ def advance(rates, look, start, p, sizes, control, bounds, watches, limits):
     found, memory = np.empty((most, 3)), np.zeros(4)
     y, new, f, here = y.copy(), np.empty(n), np.empty(n), np.empty(sizes[0])
     room = (
-        np.empty((n, columns)), np.empty((columns, columns)), np.empty(columns, np.int64),
+        np.empty((columns, n)), np.empty((columns, columns)), np.empty(columns, np.int64),
         np.empty((STAGES, n)), np.empty(n),
     )  # fmt: skip
     before, after = np.empty(len(watches[0])), np.empty(len(watches[0]))

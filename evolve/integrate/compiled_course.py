@@ -6,7 +6,7 @@ import numpy as np
 
 from evolve.integrate.advance import DOMAIN, FIRED, MORE, STEP_LIMIT, TOO_SMALL
 from evolve.integrate.course import FINEST, sharpness, smallest_sizes
-from evolve.integrate.engine import flat
+from evolve.integrate.engine import FIRST
 from evolve.integrate.solver import Halt
 
 SHARE = 1000
@@ -43,9 +43,9 @@ class CompiledCourse:
     def follow(self, bound):
         """Integrate to `bound` or the first terminal event; the engine's complaint or ""."""
         run, stretch = self.run, self.stretch
-        numbers = [*map(float, run.switches), stretch.origin, *flat(run.pair.parameters)]
-        parameters, control, bounds = np.array(numbers), self._control(), self._bounds()
-        watches = self._watches()
+        parameters = self.engine.numbers.copy()
+        parameters[:FIRST] = [*run.switches, stretch.origin]
+        control, bounds, watches = self._control(), self._bounds(), self._watches()
         x, h, state, reason = float(stretch.start), 0.0, self._packed(stretch.state), MORE
         while reason == MORE:
             left = run.numerics["max_evaluations"] - run.evaluations

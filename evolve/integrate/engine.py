@@ -18,6 +18,8 @@ from pathlib import Path
 from tempfile import NamedTemporaryFile
 from typing import Any, Callable, NamedTuple
 
+import numpy as np
+
 from evolve.errors import MissingExtra
 from evolve.integrate import advance as walk
 from evolve.integrate import rosenbrock
@@ -35,12 +37,17 @@ class CannotCompile(Exception):
 
 
 class Engine(NamedTuple):
-    """Machine code: `advance` takes the addresses of the equations in place of callables."""
+    """Machine code: `advance` takes the addresses of the equations in place of callables.
+
+    `numbers` are the parameters of one pair as the equations take them, after room for the
+    switches and the origin of time; `code` keeps the addresses alive.
+    """
 
     advance: Callable
     rates: int
     look: int
-    code: Any  # keeps the addresses alive
+    code: Any
+    numbers: Any = None
 
 
 def jitted(function, done=None, **options):
@@ -73,12 +80,12 @@ def jitted(function, done=None, **options):
 
 
 def flat(parameters):
-    """The parameters of a pair as one list of floats, tables and all, in their order."""
-    numbers = []
+    """Parameters of a pair as one array of floats, tables and all, after room for FIRST."""
+    numbers = [0.0] * FIRST
     for group in parameters:
         for value in group:
             numbers += value if isinstance(value, tuple) else (value,)
-    return numbers
+    return np.array(numbers, dtype=float)
 
 
 def engine_of(pair, inspiral=False, tell=None):
@@ -112,7 +119,7 @@ def engine_of(pair, inspiral=False, tell=None):
         _engines[key] = _compiled(pair, text, classes, user)
     if isinstance(_engines[key], CannotCompile):
         raise _engines[key]
-    return _engines[key]
+    return _engines[key]._replace(numbers=flat(pair.parameters))
 
 
 def _equations(pair, inspiral):

@@ -53,8 +53,8 @@ def difference_jacobian(rates, x, y, f, p, floor, jacobian, shifted):
         rates at (x, y).
     floor : ndarray (columns,)
         Smallest size of each slot that a difference is scaled to.
-    jacobian : ndarray (n, columns)
-        Filled.
+    jacobian : ndarray (columns, n)
+        Filled: d rates[i]/d y[slot] at [slot, i].
     shifted : ndarray (n,)
         Room to work in.
 
@@ -68,27 +68,28 @@ def difference_jacobian(rates, x, y, f, p, floor, jacobian, shifted):
     for slot in range(len(floor)):
         if f[slot] == 0.0:
             for i in range(n):
-                jacobian[i, slot] = 0.0
+                jacobian[slot, i] = 0.0
             continue
         moved = y[slot] + DIFFERENCE * max(abs(y[slot]), floor[slot])
         point[slot] = moved
         evaluate(rates, x, point, p, shifted)
         spent += 1
+        inverse = 1.0 / (moved - y[slot])
         for i in range(n):
-            jacobian[i, slot] = (shifted[i] - f[i]) / (moved - y[slot])
+            jacobian[slot, i] = (shifted[i] - f[i]) * inverse
         point[slot] = y[slot]
     return spent
 
 
-def decompose(jacobian, diagonal, matrix, pivots):
-    """LU decomposition, with row exchange, of diagonal * 1 - J over the columns of J.
+def decompose(jacobian, diagonal, matrix, order):
+    """LU decomposition, with exchange of rows, of diagonal * 1 - J over the columns of J.
 
     Parameters
     ----------
     matrix : ndarray (columns, columns)
-        Filled with both factors.
-    pivots : ndarray of int (columns,)
-        Filled with the row exchanged at each turn.
+        Filled with both factors; on the diagonal, one over it.
+    order : ndarray of int (columns,)
+        Filled with the order of the rows.
 
     Returns
     -------
@@ -99,25 +100,26 @@ def decompose(jacobian, diagonal, matrix, pivots):
     """
     size, positive = matrix.shape[0], True
     for i in range(size):
+        order[i] = i
         for j in range(size):
-            matrix[i, j] = -jacobian[i, j]
+            matrix[i, j] = -jacobian[j, i]
         matrix[i, i] += diagonal
     for k in range(size):
         best = k
         for i in range(k + 1, size):
             if abs(matrix[i, k]) > abs(matrix[best, k]):
                 best = i
-        pivots[k] = best
         if not 0.0 < abs(matrix[best, k]) < np.inf:
             return False
         positive = positive == ((matrix[best, k] > 0.0) == (best == k))
         if best != k:
-            for j in range(k, size):  # factors to the left stay: `solve` exchanges as it goes
-                swap = matrix[k, j]
-                matrix[k, j] = matrix[best, j]
-                matrix[best, j] = swap
+            order[k], order[best] = order[best], order[k]
+            for j in range(size):
+                matrix[k, j], matrix[best, j] = matrix[best, j], matrix[k, j]
+        inverse = 1.0 / matrix[k, k]
+        matrix[k, k] = inverse
         for i in range(k + 1, size):
-            factor = matrix[i, k] / matrix[k, k]
+            factor = matrix[i, k] * inverse
             matrix[i, k] = factor
             if factor != 0.0:
                 for j in range(k + 1, size):
@@ -125,39 +127,35 @@ def decompose(jacobian, diagonal, matrix, pivots):
     return positive
 
 
-def solve(jacobian, diagonal, matrix, pivots, right, u):
+def solve(jacobian, diagonal, matrix, order, right, u):
     """Solve (diagonal - J) u = right: the columns by the factors, then the quadratures."""
-    size = matrix.shape[0]
+    size, inverse = matrix.shape[0], 1.0 / diagonal
     for i in range(size):
-        u[i] = right[i]
-    for k in range(size):
-        best = pivots[k]
-        if best != k:
-            swap = u[k]
-            u[k] = u[best]
-            u[best] = swap
-        for i in range(k + 1, size):
-            u[i] -= matrix[i, k] * u[k]
-    for k in range(size - 1, -1, -1):
-        for j in range(k + 1, size):
-            u[k] -= matrix[k, j] * u[j]
-        u[k] /= matrix[k, k]
+        total = right[order[i]]
+        for j in range(i):
+            total -= matrix[i, j] * u[j]
+        u[i] = total
+    for i in range(size - 1, -1, -1):
+        total = u[i]
+        for j in range(i + 1, size):
+            total -= matrix[i, j] * u[j]
+        u[i] = total * matrix[i, i]
     for i in range(size, len(right)):
         total = right[i]
         for j in range(size):
-            total += jacobian[i, j] * u[j]
-        u[i] = total / diagonal
+            total += jacobian[j, i] * u[j]
+        u[i] = total * inverse
 
 
-def step(rates, x, y, f, h, p, jacobian, matrix, pivots, u, right, new):
+def step(rates, x, y, f, h, p, jacobian, matrix, order, u, right, new):
     """One step of length h from (x, y).
 
     Parameters
     ----------
     f : ndarray (n,)
         rates at (x, y).
-    jacobian : ndarray (n, columns)
-    matrix, pivots, right : room to work in
+    jacobian : ndarray (columns, n)
+    matrix, order, right : room to work in
     u : ndarray (6, n)
         Filled with the stages; the last one is the estimate of the error.
     new : ndarray (n,)
@@ -169,25 +167,24 @@ def step(rates, x, y, f, h, p, jacobian, matrix, pivots, u, right, new):
         False if no step of this length can be taken.
     """
     n, diagonal = len(y), 1.0 / (h * GAMMA)
-    if not decompose(jacobian, diagonal, matrix, pivots):
+    if not decompose(jacobian, diagonal, matrix, order):
         return False
+    for i in range(n):
+        right[i] = f[i]
     for stage in range(STAGES):
-        if stage == 0:
+        if stage > 0:
             for i in range(n):
-                right[i] = f[i]
-        else:
-            for i in range(n):
-                moved = y[i]
+                total = y[i]
                 for j in range(stage):
-                    moved += A[stage, j] * u[j, i]
-                new[i] = moved
+                    total += A[stage, j] * u[j, i]
+                new[i] = total
             evaluate(rates, x, new, p, right)
             for i in range(n):
-                coupled = 0.0
+                total = 0.0
                 for j in range(stage):
-                    coupled += COUPLING[stage, j] * u[j, i]
-                right[i] += coupled / h
-        solve(jacobian, diagonal, matrix, pivots, right, u[stage])
+                    total += COUPLING[stage, j] * u[j, i]
+                right[i] += total / h
+        solve(jacobian, diagonal, matrix, order, right, u[stage])
     for i in range(n):
         new[i] += u[STAGES - 1, i]
     return True

@@ -11,7 +11,7 @@ def one_step(rates, y, h, columns=None):
     """(new state, stages) of one step from y."""
     n = len(y)
     columns = columns or n
-    f, jacobian, u = np.empty(n), np.empty((n, columns)), np.empty((6, n))
+    f, jacobian, u = np.empty(n), np.empty((columns, n)), np.empty((6, n))
     rates(0.0, y, None, f)
     difference_jacobian(rates, 0.0, y, f, None, np.full(columns, 1e-3), jacobian, np.empty(n))
     new, matrix = np.empty(n), np.empty((columns, columns))
@@ -46,13 +46,13 @@ def test_linear_systems():
     """Against numpy.linalg, with rows that must be exchanged; quadratures by their own row."""
     random = np.random.default_rng(5)
     for size in range(1, 8):
-        jacobian, right = random.normal(size=(size + 2, size)), random.normal(size=size + 2)
-        matrix, pivots, u = np.empty((size, size)), np.empty(size, int), np.empty(size + 2)
+        jacobian, right = random.normal(size=(size, size + 2)), random.normal(size=size + 2)
+        matrix, order, u = np.empty((size, size)), np.empty(size, int), np.empty(size + 2)
         whole = 1e-3 * np.eye(size + 2)
-        whole[:, :size] -= jacobian
+        whole[:, :size] -= jacobian.T
         positive = np.linalg.det(whole[:size, :size]) > 0.0
-        assert decompose(jacobian, 1e-3, matrix, pivots) == positive
-        solve(jacobian, 1e-3, matrix, pivots, right, u)
+        assert decompose(jacobian, 1e-3, matrix, order) == positive
+        solve(jacobian, 1e-3, matrix, order, right, u)
         assert u == pytest.approx(np.linalg.solve(whole, right), rel=1e-8)
     assert not decompose(np.zeros((2, 2)), 0.0, np.empty((2, 2)), np.empty(2, int))
 
