@@ -20,7 +20,6 @@ from typing import Any, Callable, NamedTuple
 
 import numpy as np
 
-from evolve.errors import MissingExtra
 from evolve.integrate import advance as walk
 from evolve.integrate import rosenbrock
 from evolve.integrate.stretch import shrinking_rate
@@ -105,8 +104,6 @@ def engine_of(pair, inspiral=False, tell=None):
 
     Raises
     ------
-    MissingExtra
-        Without numba.
     CannotCompile
         With numba's own reason.
     """
@@ -171,10 +168,8 @@ def _listed(name, places):
 
 
 def _compiled(pair, text, classes, user):
-    try:
-        import numba
-    except ImportError as error:
-        raise MissingExtra("numba", "fast") from error
+    import numba
+
     namespace = {**user, **classes, "cfunc": numba.cfunc, "carray": numba.carray}
     exec(compile(pair.equations, "<equations>", "exec"), namespace)
     done = {}

@@ -6,7 +6,7 @@ floats and arrays, which run as they stand and compiled.
 
 The state is `columns` slots on which the equations depend, then quadratures: slots with
 derivatives that nothing depends on. Quadratures go through the same stages, with their rows of
-the Jacobian, so that every linear invariant of the equations is kept to rounding.
+the Jacobian, so that linear invariants of the equations are kept as well as differences are exact.
 """
 
 import numpy as np

@@ -6,6 +6,7 @@ from concurrent.futures import ProcessPoolExecutor
 from typing import Any, NamedTuple
 
 from evolve.config import Config, read_config
+from evolve.config.schema import ENGINES
 from evolve.errors import ConfigError, EvolveError
 from evolve.integrate import integrate
 
