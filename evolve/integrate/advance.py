@@ -217,6 +217,22 @@ def take_step(rates, x, y, f, p, h, end, control, room, new, memory):
     return h
 
 
+def make_room(n, columns):
+    """Jacobian and room to work in, for `step`."""
+    return (
+        np.empty((columns, n)), np.empty((columns, columns)), np.empty(columns, np.int64),
+        np.empty((STAGES, n)), np.empty(n),
+    )  # fmt: skip
+
+
+def make_rows(most, n, sizes):
+    """x, states, quantities, present gauges; numbers of rows and events so far."""
+    return (
+        np.empty(most), np.empty((most, n)), np.empty((most, sizes[0])), np.empty(sizes[1]),
+        np.zeros(2, np.int64),
+    )  # fmt: skip
+
+
 def advance(rates, look, start, p, sizes, control, bounds, watches, limits):
     """Integrate until something ends it.
 
@@ -255,17 +271,10 @@ def advance(rates, look, start, p, sizes, control, bounds, watches, limits):
     """
     x, end, h, y = start
     n, columns, most = len(y), len(control[2]), limits[1] + 2 * len(watches[0])
-    rows = (
-        np.empty(most), np.empty((most, n)), np.empty((most, sizes[0])), np.empty(sizes[1]),
-        np.zeros(2, np.int64),
-    )  # fmt: skip
+    rows, room = make_rows(most, n, sizes), make_room(n, columns)
     xs, states, quantities, gauges, counts = rows
     found, memory = np.empty((most, 3)), np.zeros(4)
     y, new, f, here = y.copy(), np.empty(n), np.empty(n), np.empty(sizes[0])
-    room = (
-        np.empty((columns, n)), np.empty((columns, columns)), np.empty(columns, np.int64),
-        np.empty((STAGES, n)), np.empty(n),
-    )  # fmt: skip
     before, after = np.empty(len(watches[0])), np.empty(len(watches[0]))
     observe(look, x, y, p, here, gauges)
     read(gauges, watches[0], watches[1], before)
