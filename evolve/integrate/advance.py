@@ -47,15 +47,16 @@ def first_step(y, f, rtol, atol, span):
     return min(0.01 * (size / change) ** 0.5, span)
 
 
-def within(rates, look, x, y, f, h, p, room, state, quantities, gauges):
+def within(rates, look, x, y, f, h, p, room, held, state, quantities, gauges):
     """Fill the state a length h after (x, y), and what it shows: by a step of just that length,
     which is as accurate as the one it is part of; an interpolant over a long step is not."""
-    jacobian, matrix, order, u, right = room
-    step(rates, x, y, f, h, p, jacobian, matrix, order, u, right, state)
+    step(rates, x, y, f, h, p, room, held, state)
     observe(look, x + h, state, p, quantities, gauges)
 
 
-def root(rates, look, x, y, f, h, p, room, gauge, level, before, after, state, quantities, gauges):
+def root(
+    rates, look, x, y, f, h, p, room, held, gauge, level, before, after, state, quantities, gauges
+):
     """Length after which one gauge crosses its level within a step of length h.
 
     Bisection sped up by inverse quadratic interpolation: Chandrupatla 1997, Adv. Eng. Softw.
@@ -69,7 +70,7 @@ def root(rates, look, x, y, f, h, p, room, gauge, level, before, after, state, q
     width = max(1e-12 * h, 4e-16 * max(abs(x), abs(x + h)))
     for _ in range(100):
         length = a + share * (b - a)
-        within(rates, look, x, y, f, length, p, room, state, quantities, gauges)
+        within(rates, look, x, y, f, length, p, room, held, state, quantities, gauges)
         value = gauges[gauge] - level
         if (value > 0.0) == (fa > 0.0):
             c, fc = a, fa
@@ -130,13 +131,13 @@ def next_length(h, error, last_h, last_error):
     return h / factor
 
 
-def find_events(rates, look, x, y, f, h, p, room, watches, before, after, rows, found):
+def find_events(rates, look, x, y, f, h, p, room, held, watches, before, after, rows, found):
     """Rows of the events within one step, up to and with the first terminal one.
 
     Parameters
     ----------
-    room : tuple
-        Jacobian at y, and room to work in.
+    room, held : tuple, int
+        As `step` has them.
     watches : tuple of ndarray
         gauge, level, direction, terminal of every watch.
     before, after : ndarray
@@ -157,7 +158,7 @@ def find_events(rates, look, x, y, f, h, p, room, watches, before, after, rows, 
     for watch in range(len(gauge)):
         if crossed(watch, direction, before, after):
             lengths[watch] = root(
-                rates, look, x, y, f, h, p, room, gauge[watch], level[watch], before[watch],
+                rates, look, x, y, f, h, p, room, held, gauge[watch], level[watch], before[watch],
                 after[watch], states[counts[ROW]], quantities[counts[ROW]], gauges,
             )  # fmt: skip
     while True:
@@ -167,8 +168,9 @@ def find_events(rates, look, x, y, f, h, p, room, watches, before, after, rows, 
         row, event = counts[ROW], counts[EVENT]
         xs[row] = x + lengths[watch]
         within(
-            rates, look, x, y, f, lengths[watch], p, room, states[row], quantities[row], gauges
-        )
+            rates, look, x, y, f, lengths[watch], p, room, held, states[row], quantities[row],
+            gauges,
+        )  # fmt: skip
         found[event, 0], found[event, 1] = row, watch
         found[event, 2] = gauges[gauge[watch]] - level[watch]
         counts[ROW], counts[EVENT] = row + 1, event + 1
@@ -193,8 +195,7 @@ def take_step(rates, x, y, f, p, h, end, control, room, new, memory):
         Length of the step taken: 0.0 if none is short enough.
     """
     rtol, atol, floor, longest = control
-    jacobian, matrix, order, u, right = room
-    memory[SPENT] += difference_jacobian(rates, x, y, f, p, floor, jacobian, right)
+    memory[SPENT] += difference_jacobian(rates, x, y, f, p, floor, room[0], room[4])
     rejected = False
     while True:
         h = min(h, longest)
@@ -203,8 +204,8 @@ def take_step(rates, x, y, f, p, h, end, control, room, new, memory):
         elif x + 0.1 * h == x:
             return 0.0
         error = np.inf
-        if step(rates, x, y, f, h, p, jacobian, matrix, order, u, right, new):
-            error = error_norm(y, new, u, rtol, atol)
+        if step(rates, x, y, f, h, p, room, len(atol), new):
+            error = error_norm(y, new, room[3], rtol, atol)
         memory[SPENT] += STAGES - 1
         if error <= 1.0:
             break
@@ -270,7 +271,8 @@ def advance(rates, look, start, p, sizes, control, bounds, watches, limits):
     evaluations, steps : int
     """
     x, end, h, y = start
-    n, columns, most = len(y), len(control[2]), limits[1] + 2 * len(watches[0])
+    n, held, columns = len(y), len(control[1]), len(control[2])
+    most = limits[1] + 2 * len(watches[0])
     rows, room = make_rows(most, n, sizes), make_room(n, columns)
     xs, states, quantities, gauges, counts = rows
     found, memory = np.empty((most, 3)), np.zeros(4)
@@ -294,9 +296,8 @@ def advance(rates, look, start, p, sizes, control, bounds, watches, limits):
         arrived = end if x + taken >= end else x + taken
         observe(look, arrived, new, p, here, gauges)
         read(gauges, watches[0], watches[1], after)
-        if find_events(
-            rates, look, x, y, f, taken, p, room, watches, before, after, rows, found
-        ):
+        step_taken = (rates, look, x, y, f, taken, p, room, held)
+        if find_events(*step_taken, watches, before, after, rows, found):
             reason = FIRED
             break
         slot = out_of_bounds(new, bounds[0], bounds[1])
