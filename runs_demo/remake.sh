@@ -16,4 +16,9 @@ evolve draw conservative.h5 expelling.h5 -o conservative_or_expelling.png --repl
 evolve contact ../configs/red_dwarf.toml > contact.txt
 evolve sweep ../configs/studies/contact_time.toml -o contact_time.h5 --replace > contact_time.txt 2> /dev/null
 evolve draw contact_time.h5 -o contact_time.png --replace
+evolve sweep ../configs/studies/bifurcation.toml -o bifurcation.h5 --replace > bifurcation.txt 2> /dev/null
+evolve draw bifurcation.h5 --result end.period -o bifurcation.png --replace
+evolve sweep ../configs/studies/bifurcation_giants.toml -o bifurcation_giants.h5 --replace > bifurcation_giants.txt 2> /dev/null
+evolve draw bifurcation_giants.h5 --result end.period -o bifurcation_giants.png --replace
+evolve origin ../configs/studies/origin.toml --draw origin.png --replace > origin.txt 2> /dev/null
 rm conservative.h5 expelling.h5

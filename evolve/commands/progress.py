@@ -39,15 +39,42 @@ def history_bar(quiet=False):
 
 @contextmanager
 def counting_bar(total, what, quiet=False):
-    """A progress callback for many: called with the number done."""
+    """A progress callback for many: called with the number done.
+
+    What was done before the first call (a study that goes on) has no part in the rate.
+    """
     if quiet or not sys.stderr.isatty():
         yield None
         return
     from tqdm import tqdm
 
-    with tqdm(total=total, delay=1.0, unit=what, leave=False) as bar:
+    begun = []
+    with tqdm(total=total, delay=1.0, unit=f" {what}", leave=False) as bar:
 
         def progress(done):
+            if begun:
+                bar.update(done - bar.n)
+                return
+            begun.append(done)
+            bar.initial = bar.n = bar.last_print_n = done
+
+        yield progress
+
+
+@contextmanager
+def stages_bar(quiet=False):
+    """A progress callback for work in stages: called with (done, total, what is counted)."""
+    if quiet or not sys.stderr.isatty():
+        yield None
+        return
+    from tqdm import tqdm
+
+    with tqdm(total=0, delay=1.0, leave=False) as bar:
+
+        def progress(done, total, what):
+            if bar.unit != f" {what}":
+                bar.unit = f" {what}"
+                bar.reset(total)
             bar.update(done - bar.n)
 
         yield progress

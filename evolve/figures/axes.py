@@ -1,8 +1,9 @@
-"""Abscissas on which a phase of a thousand years and one of ten gigayears both show."""
+"""Axes: of studies, and of time where a thousand years and ten gigayears both show."""
 
 import numpy as np
 
 from evolve.config.units import human
+from evolve.figures.style import plain_log_ticks
 
 
 def stretched_time(time, curves, weight=1.0):
@@ -61,3 +62,28 @@ def time_ticks(position, time, count=6):
             label = f"end \u2212 {human(left, 'time', 2)}" if left > 0.0 else "end"
         labels.append(label)
     return wanted.tolist(), labels
+
+
+def named(name, unit):
+    """A label: a name with its unit."""
+    return f"{name} [{unit}]" if unit else name
+
+
+def positions(scale):
+    """Positions of a study's axis, ndarray: its numbers, or places for words."""
+    words = scale.values.dtype.kind in "OU"
+    return np.arange(len(scale.values), dtype=float) if words else scale.values.astype(float)
+
+
+def label_scale(axis, scale, which):
+    """Make the x or y axis of a panel that of a study.
+
+    Words become ticks; the axis is logarithmic where the numbers are spaced so.
+    """
+    x = positions(scale)
+    if scale.values.dtype.kind in "OU":
+        getattr(axis, f"set_{which}ticks")(x, [str(word) for word in scale.values])
+    elif len(x) > 2 and (x > 0.0).all() and np.allclose(np.diff(np.log(x)), np.log(x[1] / x[0])):
+        getattr(axis, f"set_{which}scale")("log")
+        plain_log_ticks(getattr(axis, f"{which}axis"))
+    getattr(axis, f"set_{which}label")(named(scale.key, scale.unit))
