@@ -49,7 +49,7 @@ def evaluate(rates, x, y, p, out):
     rates(x, y, p, out)
 
 
-def difference_jacobian(rates, x, y, f, p, floor, jacobian, shifted):
+def difference_jacobian(rates, x, y, f, p, floor, jacobian, point, shifted):
     """Fill d rates/d y by forward differences; columns of slots that stand still stay zero.
 
     Parameters
@@ -62,7 +62,7 @@ def difference_jacobian(rates, x, y, f, p, floor, jacobian, shifted):
         Smallest size of each slot that a difference is scaled to.
     jacobian : ndarray (columns, n)
         Filled: d rates[i]/d y[slot] at [slot, i].
-    shifted : ndarray (n,)
+    point, shifted : ndarray (n,)
         Room to work in.
 
     Returns
@@ -71,7 +71,8 @@ def difference_jacobian(rates, x, y, f, p, floor, jacobian, shifted):
         Evaluations spent.
     """
     n, spent = len(y), 0
-    point = y.copy()
+    for i in range(n):
+        point[i] = y[i]
     for slot in range(len(floor)):
         if f[slot] == 0.0:
             for i in range(n):
@@ -134,24 +135,24 @@ def decompose(jacobian, diagonal, matrix, order):
     return positive
 
 
-def solve(jacobian, diagonal, matrix, order, right, u, held):
-    """Solve (diagonal - J) u = right: the columns by the factors, then what hangs on them."""
+def solve(jacobian, diagonal, matrix, order, right, u, stage, held):
+    """Solve (diagonal - J) u[stage] = right: the columns by the factors, then what hangs on them."""
     size, inverse = matrix.shape[0], 1.0 / diagonal
     for i in range(size):
         total = right[order[i]]
         for j in range(i):
-            total -= matrix[i, j] * u[j]
-        u[i] = total
+            total -= matrix[i, j] * u[stage, j]
+        u[stage, i] = total
     for i in range(size - 1, -1, -1):
-        total = u[i]
+        total = u[stage, i]
         for j in range(i + 1, size):
-            total -= matrix[i, j] * u[j]
-        u[i] = total * matrix[i, i]
+            total -= matrix[i, j] * u[stage, j]
+        u[stage, i] = total * matrix[i, i]
     for i in range(size, held):
         total = right[i]
         for j in range(size):
-            total += jacobian[j, i] * u[j]
-        u[i] = total * inverse
+            total += jacobian[j, i] * u[stage, j]
+        u[stage, i] = total * inverse
 
 
 def step(rates, x, y, f, h, p, room, held, new):
@@ -183,7 +184,7 @@ def step(rates, x, y, f, h, p, room, held, new):
         right[i] = new[i] = f[i]
     for i in range(held, n):
         new[i] *= MEAN[0]
-    solve(jacobian, diagonal, matrix, order, right, u[0], held)
+    solve(jacobian, diagonal, matrix, order, right, u, 0, held)
     for stage in range(1, STAGES):
         for i in range(held):
             total = y[i]
@@ -198,7 +199,7 @@ def step(rates, x, y, f, h, p, room, held, new):
             for j in range(stage):
                 total += COUPLING[stage, j] * u[j, i]
             right[i] += total / h
-        solve(jacobian, diagonal, matrix, order, right, u[stage], held)
+        solve(jacobian, diagonal, matrix, order, right, u, stage, held)
     for i in range(held):
         new[i] += u[LAST, i]
     for slot in range(size):

@@ -3,7 +3,7 @@
 import numpy as np
 import pytest
 
-from evolve.integrate.advance import DOMAIN, END, FIRED, MORE, STEP_LIMIT, TOO_SMALL, advance, make_room
+from evolve.integrate.advance import DOMAIN, END, FIRED, MORE, STEP_LIMIT, TOO_SMALL, advance, make_buffers, make_room
 from evolve.integrate.rosenbrock import MEAN, decompose, difference_jacobian, solve, step
 
 
@@ -13,7 +13,7 @@ def one_step(rates, y, h, columns=None, held=None):
     columns = columns or n
     f, new, room = np.empty(n), np.empty(n), make_room(n, columns)
     rates(0.0, y, None, f)
-    difference_jacobian(rates, 0.0, y, f, None, np.full(columns, 1e-3), room[0], room[4])
+    difference_jacobian(rates, 0.0, y, f, None, np.full(columns, 1e-3), room[0], new, room[4])
     assert step(rates, 0.0, y, f, h, None, room, held or columns, new)
     return new, room[3]
 
@@ -49,7 +49,7 @@ def test_linear_systems():
         whole[:, :size] -= jacobian.T
         positive = np.linalg.det(whole[:size, :size]) > 0.0
         assert decompose(jacobian, 1e-3, matrix, order) == positive
-        solve(jacobian, 1e-3, matrix, order, right, u, size + 2)
+        solve(jacobian, 1e-3, matrix, order, right, u[np.newaxis], 0, size + 2)
         assert u == pytest.approx(np.linalg.solve(whole, right), rel=1e-8)
     assert not decompose(np.zeros((2, 2)), 0.0, np.empty((2, 2)), np.empty(2, int))
 
@@ -109,11 +109,14 @@ def walk(rates=swing, y=(1.0, 0.3), end=10.0, watches=(), rtol=1e-8, longest=np.
         table[:, 0].astype(int), table[:, 1].copy(), table[:, 2].astype(int),
         table[:, 3].astype(bool),
     )  # fmt: skip
-    return advance(
-        rates, look, (x, end, h, np.array(y)), None, (2, 2),
+    buffers = make_buffers(limits[1], n, n, (2, 2), len(watches))
+    reason, slot, h, rows, events, evaluations, steps = advance(
+        rates, look, (x, end, h, np.array(y)), None,
         (rtol, np.full(n, rtol), np.full(n, 1e-3), longest),
-        (np.full(1, bounds[0]), np.full(1, bounds[1])), columns, limits,
+        (np.full(1, bounds[0]), np.full(1, bounds[1])), columns, limits, buffers,
     )  # fmt: skip
+    xs, states, quantities = (array[:rows] for array in buffers[0][:3])
+    return reason, slot, h, xs, states, quantities, buffers[1][:events], evaluations, steps
 
 
 def test_walk_to_the_end():
