@@ -2,12 +2,12 @@
 
     python tests/benchmarks/run_sweeps.py [POINTS]
 
-Ratios, each of times taken here in one run: one process over two, for bare loops (what the
-machine gives at the moment) and for a sweep; the sweep of POINTS
-real histories over integrating the same configs one by one; and, for cheap points (a year of a
-detached pair), the same over a hundred thousand. Last, the peak memory of a sweep of a thousand
-and of a hundred thousand cheap points, each in a process of its own, and how much a point adds.
-The hundred thousand take some minutes.
+One process over two: wall-clock, the best of three turns of each, for bare loops (what the
+machine gives, with whatever else runs on it) and for a sweep of POINTS histories of a red dwarf.
+A sweep over its engine: processor time of one process, over reading the same configs and
+integrating them; for the red dwarfs, and for points so cheap (a year of a detached pair) that a
+hundred thousand of them take some minutes. Last, the peak memory of a sweep of a thousand and of
+a hundred thousand cheap points, each in a process of its own, and how much a point adds.
 """
 
 import subprocess
@@ -15,7 +15,7 @@ import sys
 import tempfile
 from concurrent.futures import ProcessPoolExecutor
 from pathlib import Path
-from time import perf_counter
+from time import perf_counter, process_time
 
 CHEAP = """
 [base]
@@ -45,27 +45,29 @@ def study(folder, text, name, **values):
     return path
 
 
-def seconds(action):
-    start = perf_counter()
-    action()
-    return perf_counter() - start
+def best(*actions, turns=3):
+    """Least wall-clock seconds of each action, in turn."""
+    times = [[] for _ in actions]
+    for _ in range(turns):
+        for action, found in zip(actions, times, strict=True):
+            start = perf_counter()
+            action()
+            found.append(perf_counter() - start)
+    return [min(found) for found in times]
 
 
-def engine_alone(path):
-    """Seconds that the histories of a study take without it; its configs are read before."""
+def engine_alone(path, points):
+    """Processor seconds of reading and integrating some points of a study, by hand."""
     from evolve.integrate import integrate
     from evolve.studies.study import read_study
-    from evolve.studies.sweep import MANY
 
     found = read_study(path)
-    many, total = found.size >= MANY, 0.0
-    integrate(found.base, many=many)  # a compilation is not counted
-    for change in found.points(range(found.size)):
-        config = found.base.with_values(change)
-        start = perf_counter()
-        integrate(config, many=many)
-        total += perf_counter() - start
-    return total
+    integrate(found.base, many=True)  # a compilation is not counted
+    changes = list(found.points(range(points)))
+    start = process_time()
+    for change in changes:
+        integrate(found.base.with_values(change), many=True)
+    return process_time() - start
 
 
 def spin(turns=30_000_000):
@@ -77,46 +79,50 @@ def spin(turns=30_000_000):
 
 
 def of_this_machine():
-    """One process over two for bare loops: what a sweep can reach here, beside whatever else runs."""
+    """One process over two for bare loops."""
     with ProcessPoolExecutor(2) as pool:
-        list(pool.map(spin, [1, 1]))
-        two = seconds(lambda: list(pool.map(spin, [30_000_000] * 4)))
-    return seconds(lambda: [spin() for _ in range(4)]) / two
+        one, two = best(lambda: [spin(), spin()], lambda: list(pool.map(spin, [30_000_000] * 2)))
+    return one / two
 
 
-def peak(path, output):
-    """Peak resident memory [MB] of a sweep in a process of its own, and its seconds."""
+def apart(path, output):
+    """(peak resident memory [MB], processor seconds) of a sweep in a process of its own."""
     code = (
-        "import sys, resource; from evolve.studies.sweep import sweep; "
-        "sweep(sys.argv[1], sys.argv[2], replace=True); "
-        "print(resource.getrusage(resource.RUSAGE_SELF).ru_maxrss / 1024)"
+        "import sys, resource, time; from evolve.studies.sweep import sweep; "
+        "from evolve.studies.study import read_study; from evolve.integrate import integrate; "
+        "study = read_study(sys.argv[1]); integrate(study.base, many=True); "
+        "start = time.process_time(); sweep(study, sys.argv[2], replace=True); "
+        "print(resource.getrusage(resource.RUSAGE_SELF).ru_maxrss / 1024, time.process_time() - start)"
     )
     command = [sys.executable, "-c", code, str(path), str(output)]
-    start = perf_counter()
     done = subprocess.run(command, check=True, capture_output=True, text=True)
-    return float(done.stdout), perf_counter() - start
+    return tuple(map(float, done.stdout.split()))
 
 
-def main(points=4000):
+def main(points=1500):
     from evolve.studies.sweep import sweep
 
     with tempfile.TemporaryDirectory() as name:
         folder = Path(name)
         real = study(folder, REAL, "real", config=CONFIG, count=points)
-        alone = engine_alone(real)  # also fills the cache of machine code
-        one = seconds(lambda: sweep(real, folder / "one.h5"))
-        two = seconds(lambda: sweep(real, folder / "two.h5", workers=2))
-        print(f"bare loops, one process over two                        {of_this_machine():6.2f}")
-        print(f"{points} histories of a red dwarf, one process over two   {one / two:6.2f}")
-        print(f"{points} histories of a red dwarf, sweep over engine      {one / alone:6.2f}")
+        alone = engine_alone(real, points)
+        _, took = apart(real, folder / "real.h5")
+        one, two = best(lambda: sweep(real), lambda: sweep(real, workers=2))
+        say("bare loops, one process over two", of_this_machine())
+        say(f"{points} red dwarfs, one process over two", one / two)
+        say(f"{points} red dwarfs, sweep over engine", took / alone)
         few = study(folder, CHEAP, "few", count=10)
         many = study(folder, CHEAP, "many", count=1000)
-        small, _ = peak(few, folder / "few.h5")
-        large, took = peak(many, folder / "many.h5")
-        alone = 100 * engine_alone(few)
-        print(f"100000 cheap points, sweep over engine               {took / alone:6.2f}")
-        print(f"peak memory of 1000 and 100000 cheap points          {small:6.0f} and {large:.0f} MB")
-        print(f"a point adds                                         {(large - small) / 0.099:6.0f} B")
+        small, _ = apart(few, folder / "few.h5")
+        large, took = apart(many, folder / "many.h5")
+        say("100000 cheap points, sweep over engine", took / (100 * engine_alone(few, 1000)))
+        say("peak memory of 1000 cheap points [MB]", small)
+        say("peak memory of 100000 cheap points [MB]", large)
+        say("what a point adds [B]", (large - small) * 2**20 / 99000)
+
+
+def say(what, number):
+    print(f"{what:45s}{number:8.2f}", flush=True)
 
 
 if __name__ == "__main__":
