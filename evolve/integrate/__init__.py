@@ -1,7 +1,5 @@
 """Integration of a pair's equations, chapter by chapter, with solve_ivp."""
 
-from functools import cache
-
 
 def integrate(config, progress=None, many=False):
     """The history of one config.
@@ -25,18 +23,19 @@ def integrate(config, progress=None, many=False):
     ------
     ConfigError
         If the pair cannot start as written.
+    MissingExtra
+        If the config asks for the compiled engine and numba is not there.
     """
+    from importlib.util import find_spec
+
+    from evolve.errors import MissingExtra
     from evolve.integrate.assemble import history_of
     from evolve.integrate.run import Run
     from evolve.system.pair import Pair
 
     engine = config.values["numerics"]["engine"]
-    compiled = engine == "compiled" or engine == "auto" and many and _has_numba()
-    return history_of(Run(Pair(config), progress, compiled).run())
-
-
-@cache
-def _has_numba():
-    from importlib.util import find_spec
-
-    return find_spec("numba") is not None
+    wanted = engine == "compiled" or engine == "auto" and many
+    there = wanted and find_spec("numba") is not None
+    if engine == "compiled" and not there:
+        raise MissingExtra("numba", "fast")
+    return history_of(Run(Pair(config), progress, compiled=there).run())

@@ -47,15 +47,16 @@ def first_step(y, f, rtol, atol, span):
     return min(0.01 * (size / change) ** 0.5, span)
 
 
-def within(rates, look, x, y, f, h, p, room, state, quantities, gauges):
+def within(rates, look, x, y, f, h, p, room, held, state, quantities, gauges):
     """Fill the state a length h after (x, y), and what it shows: by a step of just that length,
     which is as accurate as the one it is part of; an interpolant over a long step is not."""
-    jacobian, matrix, pivots, u, right = room
-    step(rates, x, y, f, h, p, jacobian, matrix, pivots, u, right, state)
+    step(rates, x, y, f, h, p, room, held, state)
     observe(look, x + h, state, p, quantities, gauges)
 
 
-def root(rates, look, x, y, f, h, p, room, gauge, level, before, after, state, quantities, gauges):
+def root(
+    rates, look, x, y, f, h, p, room, held, gauge, level, before, after, state, quantities, gauges
+):
     """Length after which one gauge crosses its level within a step of length h.
 
     Bisection sped up by inverse quadratic interpolation: Chandrupatla 1997, Adv. Eng. Softw.
@@ -69,7 +70,7 @@ def root(rates, look, x, y, f, h, p, room, gauge, level, before, after, state, q
     width = max(1e-12 * h, 4e-16 * max(abs(x), abs(x + h)))
     for _ in range(100):
         length = a + share * (b - a)
-        within(rates, look, x, y, f, length, p, room, state, quantities, gauges)
+        within(rates, look, x, y, f, length, p, room, held, state, quantities, gauges)
         value = gauges[gauge] - level
         if (value > 0.0) == (fa > 0.0):
             c, fc = a, fa
@@ -130,17 +131,21 @@ def next_length(h, error, last_h, last_error):
     return h / factor
 
 
-def find_events(rates, look, x, y, f, h, p, room, watches, before, after, rows, found):
+def find_events(
+    rates, look, x, y, f, h, p, room, held, watches, before, after, lengths, rows, found
+):
     """Rows of the events within one step, up to and with the first terminal one.
 
     Parameters
     ----------
-    room : tuple
-        Jacobian at y, and room to work in.
+    room, held : tuple, int
+        As `step` has them.
     watches : tuple of ndarray
         gauge, level, direction, terminal of every watch.
     before, after : ndarray
         Readings at both ends of the step.
+    lengths : ndarray
+        Room to work in.
     rows, found : tuple of ndarray, ndarray
         To fill.
 
@@ -153,22 +158,26 @@ def find_events(rates, look, x, y, f, h, p, room, watches, before, after, rows, 
     xs, states, quantities, gauges, counts = rows
     if not any_crossed(direction, before, after):
         return False
-    lengths = np.full(len(gauge), np.inf)
     for watch in range(len(gauge)):
+        lengths[watch] = np.inf
         if crossed(watch, direction, before, after):
             lengths[watch] = root(
-                rates, look, x, y, f, h, p, room, gauge[watch], level[watch], before[watch],
+                rates, look, x, y, f, h, p, room, held, gauge[watch], level[watch], before[watch],
                 after[watch], states[counts[ROW]], quantities[counts[ROW]], gauges,
             )  # fmt: skip
     while True:
-        watch = np.argmin(lengths)
+        watch = 0
+        for other in range(1, len(gauge)):
+            if lengths[other] < lengths[watch]:
+                watch = other
         if lengths[watch] > h:
             return False
         row, event = counts[ROW], counts[EVENT]
         xs[row] = x + lengths[watch]
         within(
-            rates, look, x, y, f, lengths[watch], p, room, states[row], quantities[row], gauges
-        )
+            rates, look, x, y, f, lengths[watch], p, room, held, states[row], quantities[row],
+            gauges,
+        )  # fmt: skip
         found[event, 0], found[event, 1] = row, watch
         found[event, 2] = gauges[gauge[watch]] - level[watch]
         counts[ROW], counts[EVENT] = row + 1, event + 1
@@ -193,8 +202,9 @@ def take_step(rates, x, y, f, p, h, end, control, room, new, memory):
         Length of the step taken: 0.0 if none is short enough.
     """
     rtol, atol, floor, longest = control
-    jacobian, matrix, pivots, u, right = room
-    memory[SPENT] += difference_jacobian(rates, x, y, f, p, floor, jacobian, right)
+    memory[SPENT] += difference_jacobian(
+        rates, x, y, f, p, floor, room[0], new, room[4]
+    )
     rejected = False
     while True:
         h = min(h, longest)
@@ -203,8 +213,8 @@ def take_step(rates, x, y, f, p, h, end, control, room, new, memory):
         elif x + 0.1 * h == x:
             return 0.0
         error = np.inf
-        if step(rates, x, y, f, h, p, jacobian, matrix, pivots, u, right, new):
-            error = error_norm(y, new, u, rtol, atol)
+        if step(rates, x, y, f, h, p, room, len(atol), new):
+            error = error_norm(y, new, room[3], rtol, atol)
         memory[SPENT] += STAGES - 1
         if error <= 1.0:
             break
@@ -217,8 +227,46 @@ def take_step(rates, x, y, f, p, h, end, control, room, new, memory):
     return h
 
 
-def advance(rates, look, start, p, sizes, control, bounds, watches, limits):
-    """Integrate until something ends it.
+def make_room(n, columns):
+    """Jacobian and room to work in, for `step`."""
+    return (
+        np.empty((columns, n)), np.empty((columns, columns)), np.empty(columns, np.int64),
+        np.empty((STAGES, n)), np.empty(n),
+    )  # fmt: skip
+
+
+def make_buffers(steps, n, columns, sizes, watches):
+    """All that `advance` works in and fills, for up to `steps` steps a call.
+
+    Parameters
+    ----------
+    steps, n, columns, watches : int
+    sizes : tuple of int
+        Number of quantities and of gauges.
+
+    Returns
+    -------
+    rows : tuple of ndarray
+        x, states, quantities; gauges; numbers of rows and of events.
+    found : ndarray (rows, 3)
+        Row, watch, what was left of the reading, of every event.
+    room : tuple of ndarray
+    state, readings : tuple of ndarray
+        y, new, f, quantities; before, after, lengths.
+    memory : ndarray (4,)
+    """
+    most = steps + 2 * watches + 2
+    rows = (
+        np.empty(most), np.empty((most, n)), np.empty((most, sizes[0])), np.empty(sizes[1]),
+        np.zeros(2, np.int64),
+    )  # fmt: skip
+    state = (np.empty(n), np.empty(n), np.empty(n), np.empty(sizes[0]))
+    readings = (np.empty(watches), np.empty(watches), np.empty(watches))
+    return rows, np.empty((most, 3)), make_room(n, columns), state, readings, np.zeros(4)
+
+
+def advance(rates, look, start, p, control, bounds, watches, limits, buffers):
+    """Integrate until something ends it. Nothing is allocated here.
 
     Parameters
     ----------
@@ -230,8 +278,6 @@ def advance(rates, look, start, p, sizes, control, bounds, watches, limits):
         x, end, h (0: choose), y.
     p : ndarray
         Parameters, handed through.
-    sizes : tuple of int
-        Number of quantities and of gauges.
     control : tuple
         rtol; atol (m,) of the slots whose error counts; floor (columns,); longest step.
     bounds : tuple of ndarray (k,)
@@ -240,6 +286,8 @@ def advance(rates, look, start, p, sizes, control, bounds, watches, limits):
         gauge, level, direction, terminal.
     limits : tuple of int
         Evaluations and steps that may be spent.
+    buffers : tuple
+        From `make_buffers`. Rows hold accepted steps and events in their order.
 
     Returns
     -------
@@ -247,33 +295,21 @@ def advance(rates, look, start, p, sizes, control, bounds, watches, limits):
         MORE, END, FIRED, STEP_LIMIT, DOMAIN or TOO_SMALL; the slot out of bounds.
     h : float
         Length of the next step.
-    xs, states, quantities : ndarray (rows,), (rows, n), (rows, q)
-        Accepted steps and events in their order.
-    found : ndarray (events, 3)
-        Row, watch, what was left of the reading.
-    evaluations, steps : int
+    rows, events, evaluations, steps : int
+        How many.
     """
-    x, end, h, y = start
-    n, columns, most = len(y), len(control[2]), limits[1] + 2 * len(watches[0])
-    rows = (
-        np.empty(most), np.empty((most, n)), np.empty((most, sizes[0])), np.empty(sizes[1]),
-        np.zeros(2, np.int64),
-    )  # fmt: skip
+    x, end, h, begin = start
+    rows, found, room, (y, new, f, here), (before, after, lengths), memory = buffers
     xs, states, quantities, gauges, counts = rows
-    found, memory = np.empty((most, 3)), np.zeros(4)
-    y, new, f, here = y.copy(), np.empty(n), np.empty(n), np.empty(sizes[0])
-    room = (
-        np.empty((n, columns)), np.empty((columns, columns)), np.empty(columns, np.int64),
-        np.empty((STAGES, n)), np.empty(n),
-    )  # fmt: skip
-    before, after = np.empty(len(watches[0])), np.empty(len(watches[0]))
+    counts[ROW], counts[EVENT], held = 0, 0, len(control[1])
+    copy(begin, y)
     observe(look, x, y, p, here, gauges)
     read(gauges, watches[0], watches[1], before)
     evaluate(rates, x, y, p, f)
-    memory[SPENT], reason, slot, steps = 1.0, MORE, -1, 0
+    memory[LAST], memory[SPENT], reason, slot, steps = 0.0, 1.0, MORE, -1, 0
     if h <= 0.0:
         h = first_step(y, f, control[0], control[1], end - x)
-    while reason == MORE and steps < limits[1] and counts[ROW] + len(watches[0]) < most:
+    while reason == MORE and steps < limits[1] and counts[ROW] + len(before) + 1 < len(xs):
         if memory[SPENT] > limits[0]:
             reason = STEP_LIMIT
             break
@@ -285,9 +321,8 @@ def advance(rates, look, start, p, sizes, control, bounds, watches, limits):
         arrived = end if x + taken >= end else x + taken
         observe(look, arrived, new, p, here, gauges)
         read(gauges, watches[0], watches[1], after)
-        if find_events(
-            rates, look, x, y, f, taken, p, room, watches, before, after, rows, found
-        ):
+        step_taken = (rates, look, x, y, f, taken, p, room, held)
+        if find_events(*step_taken, watches, before, after, lengths, rows, found):
             reason = FIRED
             break
         slot = out_of_bounds(new, bounds[0], bounds[1])
@@ -304,8 +339,4 @@ def advance(rates, look, start, p, sizes, control, bounds, watches, limits):
         memory[SPENT] += 1.0
         if x >= end:
             reason = END
-    count, events = counts[ROW], counts[EVENT]
-    return (
-        reason, slot, h, xs[:count].copy(), states[:count].copy(), quantities[:count].copy(),
-        found[:events].copy(), int(memory[SPENT]), steps,
-    )  # fmt: skip
+    return reason, slot, h, counts[ROW], counts[EVENT], int(memory[SPENT]), steps

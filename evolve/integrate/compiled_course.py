@@ -4,9 +4,16 @@ from math import inf
 
 import numpy as np
 
-from evolve.integrate.advance import DOMAIN, FIRED, MORE, STEP_LIMIT, TOO_SMALL
+from evolve.integrate.advance import (
+    DOMAIN,
+    FIRED,
+    MORE,
+    STEP_LIMIT,
+    TOO_SMALL,
+    make_buffers,
+)
 from evolve.integrate.course import FINEST, sharpness, smallest_sizes
-from evolve.integrate.engine import flat
+from evolve.integrate.engine import FIRST
 from evolve.integrate.solver import Halt
 
 SHARE = 1000
@@ -39,24 +46,27 @@ class CompiledCourse:
         layout = run.pair.layout
         self.core = layout.core
         self.sizes = (len(layout.quantities), len(layout.gauges))
+        self.n = len(layout.core) + len(layout.ledger) + stretch.inspiral
 
     def follow(self, bound):
         """Integrate to `bound` or the first terminal event; the engine's complaint or ""."""
         run, stretch = self.run, self.stretch
-        numbers = [*map(float, run.switches), stretch.origin, *flat(run.pair.parameters)]
-        parameters, control, bounds = np.array(numbers), self._control(), self._bounds()
-        watches = self._watches()
+        parameters = self.engine.numbers.copy()
+        parameters[:FIRST] = [*run.switches, stretch.origin]
+        control, bounds, watches = self._control(), self._bounds(), self._watches()
+        buffers = make_buffers(SHARE, self.n, len(self.core), self.sizes, len(self.watches))
         x, h, state, reason = float(stretch.start), 0.0, self._packed(stretch.state), MORE
         while reason == MORE:
             left = run.numerics["max_evaluations"] - run.evaluations
-            reason, slot, h, xs, states, seen, found, evaluations, steps = self.engine.advance(
+            reason, slot, h, rows, events, evaluations, steps = self.engine.advance(
                 self.engine.rates, self.engine.look, (x, float(bound), h, state), parameters,
-                self.sizes, control, bounds, watches, (left, SHARE),
+                control, bounds, watches, (left, SHARE), buffers,
             )  # fmt: skip
             run.evaluations, run.steps = run.evaluations + evaluations, run.steps + steps
-            if len(xs):
+            xs, states, seen = (array[:rows].copy() for array in buffers[0][:3])
+            if rows:
                 x, state = xs[-1], states[-1]
-            self._record(xs, states, seen, found)
+            self._record(xs, states, seen, buffers[1][:events])
             if run.progress:
                 run.progress(run.recorder.last_time, run.end["time"], run.regime, 0)
         if reason == FIRED:

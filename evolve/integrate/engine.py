@@ -18,7 +18,8 @@ from pathlib import Path
 from tempfile import NamedTemporaryFile
 from typing import Any, Callable, NamedTuple
 
-from evolve.errors import MissingExtra
+import numpy as np
+
 from evolve.integrate import advance as walk
 from evolve.integrate import rosenbrock
 from evolve.integrate.stretch import shrinking_rate
@@ -27,6 +28,8 @@ SWITCHES = 4
 """Numbers at the head of the flat array, before the origin of time: flow and braking of each."""
 FIRST = SWITCHES + 1
 OPTIONS = {"error_model": "numpy", "nogil": True}
+BARE = {**OPTIONS, "_nrt": False}
+"""Of the walk, which allocates nothing: without counting references it takes half as long."""
 _engines = {}
 
 
@@ -35,15 +38,20 @@ class CannotCompile(Exception):
 
 
 class Engine(NamedTuple):
-    """Machine code: `advance` takes the addresses of the equations in place of callables."""
+    """Machine code: `advance` takes the addresses of the equations in place of callables.
+
+    `numbers` are the parameters of one pair as the equations take them, after room for the
+    switches and the origin of time; `code` keeps the addresses alive.
+    """
 
     advance: Callable
     rates: int
     look: int
-    code: Any  # keeps the addresses alive
+    code: Any
+    numbers: Any = None
 
 
-def jitted(function, done=None, **options):
+def jitted(function, done=None, options=OPTIONS):
     """A plain function with every plain function it calls, compiled by numba when first called.
 
     Parameters
@@ -51,6 +59,8 @@ def jitted(function, done=None, **options):
     function : callable
     done : dict, optional
         Function -> what stands for it when compiled; filled.
+    options : dict
+        Of numba.njit.
 
     Returns
     -------
@@ -63,22 +73,22 @@ def jitted(function, done=None, **options):
         names = dict(function.__globals__)
         for name in function.__code__.co_names:
             if isinstance(names.get(name), types.FunctionType):
-                names[name] = jitted(names[name], done)
+                names[name] = jitted(names[name], done, options)
         copy = types.FunctionType(
             function.__code__, names, function.__name__, function.__defaults__
         )
         copy.__kwdefaults__ = function.__kwdefaults__
-        done[function] = numba.njit(copy, **OPTIONS)
+        done[function] = numba.njit(copy, **options)
     return done[function]
 
 
 def flat(parameters):
-    """The parameters of a pair as one list of floats, tables and all, in their order."""
-    numbers = []
+    """Parameters of a pair as one array of floats, tables and all, after room for FIRST."""
+    numbers = [0.0] * FIRST
     for group in parameters:
         for value in group:
             numbers += value if isinstance(value, tuple) else (value,)
-    return numbers
+    return np.array(numbers, dtype=float)
 
 
 def engine_of(pair, inspiral=False, tell=None):
@@ -98,8 +108,6 @@ def engine_of(pair, inspiral=False, tell=None):
 
     Raises
     ------
-    MissingExtra
-        Without numba.
     CannotCompile
         With numba's own reason.
     """
@@ -112,7 +120,7 @@ def engine_of(pair, inspiral=False, tell=None):
         _engines[key] = _compiled(pair, text, classes, user)
     if isinstance(_engines[key], CannotCompile):
         raise _engines[key]
-    return _engines[key]
+    return _engines[key]._replace(numbers=flat(pair.parameters))
 
 
 def _equations(pair, inspiral):
@@ -164,10 +172,8 @@ def _listed(name, places):
 
 
 def _compiled(pair, text, classes, user):
-    try:
-        import numba
-    except ImportError as error:
-        raise MissingExtra("numba", "fast") from error
+    import numba
+
     namespace = {**user, **classes, "cfunc": numba.cfunc, "carray": numba.carray}
     exec(compile(pair.equations, "<equations>", "exec"), namespace)
     done = {}
@@ -194,12 +200,12 @@ def _advance():
     import numba
 
     text = """
-@njit(cache=CACHED, **OPTIONS)
-def engine(rates, look, start, p, sizes, control, bounds, watches, limits):
-    return advance(rates, look, start, p, sizes, control, bounds, watches, limits)
+@njit(cache=CACHED, **BARE)
+def engine(rates, look, start, p, control, bounds, watches, limits, buffers):
+    return advance(rates, look, start, p, control, bounds, watches, limits, buffers)
 """
     done = {rosenbrock.evaluate: _caller(3), walk.observe: _caller(4)}
-    namespace = {"njit": numba.njit, "advance": jitted(walk.advance, done)}
+    namespace = {"njit": numba.njit, "advance": jitted(walk.advance, done, BARE)}
     return _run(text, [], namespace).engine
 
 
@@ -233,7 +239,7 @@ def _run(text, depends, namespace):
     path = _cached_file(text, depends)
     module = types.ModuleType(path.stem if path else "engine_unkept")
     sys.modules[module.__name__] = module  # numba looks it up by name when it loads its code
-    namespace |= {"OPTIONS": OPTIONS, "CACHED": path is not None, "__name__": module.__name__}
+    namespace |= {"OPTIONS": OPTIONS, "BARE": BARE, "CACHED": path is not None, "__name__": module.__name__}
     module.__dict__.update(namespace)
     exec(compile(text, str(path or "<engine>"), "exec"), module.__dict__)
     return module

@@ -4,9 +4,10 @@ A step solves six linear systems with one matrix, 1/(h gamma) - J. Where an over
 exponentially a Newton iteration may settle on a false state; this has none. Plain functions of
 floats and arrays, which run as they stand and compiled.
 
-The state is `columns` slots on which the equations depend, then quadratures: slots with
-derivatives that nothing depends on. Quadratures go through the same stages, with their rows of
-the Jacobian, so that every linear invariant of the equations is kept to rounding.
+The state is `columns` slots on which the equations depend, then others on which nothing does. Of
+these the first, up to `held` slots in all, go through the stages and have an error; the rest are
+quadratures: h times a weighted mean of their rates and of what the Jacobian adds. It is what the
+stages come to, so that linear invariants are kept as well as differences are exact.
 """
 
 import numpy as np
@@ -32,6 +33,12 @@ COUPLING = np.array([
 ])  # fmt: skip
 """Coefficients of Rodas4, order 4 (3) with 6 stages: Hairer & Wanner, Solving Ordinary
 Differential Equations II, section IV.7. From memory; a test measures the order."""
+LAST = STAGES - 1
+MEAN = GAMMA * np.linalg.solve(
+    np.eye(STAGES) - GAMMA * np.column_stack((COUPLING, np.zeros(STAGES))).T,
+    np.append(A[LAST], 1.0),
+)
+"""Weight of every stage in a quadrature."""
 DIFFERENCE = 4e-11
 """Relative step of the difference Jacobian, on which the order of the method rests. An overflow
 bends within 2e-5 of the radius: a straight line over 4e-11 errs by as much as rounding does."""
@@ -42,7 +49,7 @@ def evaluate(rates, x, y, p, out):
     rates(x, y, p, out)
 
 
-def difference_jacobian(rates, x, y, f, p, floor, jacobian, shifted):
+def difference_jacobian(rates, x, y, f, p, floor, jacobian, point, shifted):
     """Fill d rates/d y by forward differences; columns of slots that stand still stay zero.
 
     Parameters
@@ -53,9 +60,9 @@ def difference_jacobian(rates, x, y, f, p, floor, jacobian, shifted):
         rates at (x, y).
     floor : ndarray (columns,)
         Smallest size of each slot that a difference is scaled to.
-    jacobian : ndarray (n, columns)
-        Filled.
-    shifted : ndarray (n,)
+    jacobian : ndarray (columns, n)
+        Filled: d rates[i]/d y[slot] at [slot, i].
+    point, shifted : ndarray (n,)
         Room to work in.
 
     Returns
@@ -64,31 +71,33 @@ def difference_jacobian(rates, x, y, f, p, floor, jacobian, shifted):
         Evaluations spent.
     """
     n, spent = len(y), 0
-    point = y.copy()
+    for i in range(n):
+        point[i] = y[i]
     for slot in range(len(floor)):
         if f[slot] == 0.0:
             for i in range(n):
-                jacobian[i, slot] = 0.0
+                jacobian[slot, i] = 0.0
             continue
         moved = y[slot] + DIFFERENCE * max(abs(y[slot]), floor[slot])
         point[slot] = moved
         evaluate(rates, x, point, p, shifted)
         spent += 1
+        inverse = 1.0 / (moved - y[slot])
         for i in range(n):
-            jacobian[i, slot] = (shifted[i] - f[i]) / (moved - y[slot])
+            jacobian[slot, i] = (shifted[i] - f[i]) * inverse
         point[slot] = y[slot]
     return spent
 
 
-def decompose(jacobian, diagonal, matrix, pivots):
-    """LU decomposition, with row exchange, of diagonal * 1 - J over the columns of J.
+def decompose(jacobian, diagonal, matrix, order):
+    """LU decomposition, with exchange of rows, of diagonal * 1 - J over the columns of J.
 
     Parameters
     ----------
     matrix : ndarray (columns, columns)
-        Filled with both factors.
-    pivots : ndarray of int (columns,)
-        Filled with the row exchanged at each turn.
+        Filled with both factors; on the diagonal, one over it.
+    order : ndarray of int (columns,)
+        Filled with the order of the rows.
 
     Returns
     -------
@@ -99,25 +108,26 @@ def decompose(jacobian, diagonal, matrix, pivots):
     """
     size, positive = matrix.shape[0], True
     for i in range(size):
+        order[i] = i
         for j in range(size):
-            matrix[i, j] = -jacobian[i, j]
+            matrix[i, j] = -jacobian[j, i]
         matrix[i, i] += diagonal
     for k in range(size):
         best = k
         for i in range(k + 1, size):
             if abs(matrix[i, k]) > abs(matrix[best, k]):
                 best = i
-        pivots[k] = best
         if not 0.0 < abs(matrix[best, k]) < np.inf:
             return False
         positive = positive == ((matrix[best, k] > 0.0) == (best == k))
         if best != k:
-            for j in range(k, size):  # factors to the left stay: `solve` exchanges as it goes
-                swap = matrix[k, j]
-                matrix[k, j] = matrix[best, j]
-                matrix[best, j] = swap
+            order[k], order[best] = order[best], order[k]
+            for j in range(size):
+                matrix[k, j], matrix[best, j] = matrix[best, j], matrix[k, j]
+        inverse = 1.0 / matrix[k, k]
+        matrix[k, k] = inverse
         for i in range(k + 1, size):
-            factor = matrix[i, k] / matrix[k, k]
+            factor = matrix[i, k] * inverse
             matrix[i, k] = factor
             if factor != 0.0:
                 for j in range(k + 1, size):
@@ -125,41 +135,39 @@ def decompose(jacobian, diagonal, matrix, pivots):
     return positive
 
 
-def solve(jacobian, diagonal, matrix, pivots, right, u):
-    """Solve (diagonal - J) u = right: the columns by the factors, then the quadratures."""
-    size = matrix.shape[0]
+def solve(jacobian, diagonal, matrix, order, right, u, stage, held):
+    """Solve (diagonal - J) u[stage] = right: the columns by the factors, then what hangs on them."""
+    size, inverse = matrix.shape[0], 1.0 / diagonal
     for i in range(size):
-        u[i] = right[i]
-    for k in range(size):
-        best = pivots[k]
-        if best != k:
-            swap = u[k]
-            u[k] = u[best]
-            u[best] = swap
-        for i in range(k + 1, size):
-            u[i] -= matrix[i, k] * u[k]
-    for k in range(size - 1, -1, -1):
-        for j in range(k + 1, size):
-            u[k] -= matrix[k, j] * u[j]
-        u[k] /= matrix[k, k]
-    for i in range(size, len(right)):
+        total = right[order[i]]
+        for j in range(i):
+            total -= matrix[i, j] * u[stage, j]
+        u[stage, i] = total
+    for i in range(size - 1, -1, -1):
+        total = u[stage, i]
+        for j in range(i + 1, size):
+            total -= matrix[i, j] * u[stage, j]
+        u[stage, i] = total * matrix[i, i]
+    for i in range(size, held):
         total = right[i]
         for j in range(size):
-            total += jacobian[i, j] * u[j]
-        u[i] = total / diagonal
+            total += jacobian[j, i] * u[stage, j]
+        u[stage, i] = total * inverse
 
 
-def step(rates, x, y, f, h, p, jacobian, matrix, pivots, u, right, new):
+def step(rates, x, y, f, h, p, room, held, new):
     """One step of length h from (x, y).
 
     Parameters
     ----------
     f : ndarray (n,)
         rates at (x, y).
-    jacobian : ndarray (n, columns)
-    matrix, pivots, right : room to work in
-    u : ndarray (6, n)
-        Filled with the stages; the last one is the estimate of the error.
+    room : tuple of ndarray
+        Jacobian (columns, n), filled; room for the matrix, the order of its rows, the stages
+        (6, n) and the right side (n,). Of the last stage the first `held` slots are left as
+        the estimate of the error.
+    held : int
+        Slots whose error counts.
     new : ndarray (n,)
         Filled with the state at x + h.
 
@@ -168,28 +176,40 @@ def step(rates, x, y, f, h, p, jacobian, matrix, pivots, u, right, new):
     bool
         False if no step of this length can be taken.
     """
-    n, diagonal = len(y), 1.0 / (h * GAMMA)
-    if not decompose(jacobian, diagonal, matrix, pivots):
+    jacobian, matrix, order, u, right = room
+    n, size, diagonal = len(y), matrix.shape[0], 1.0 / (h * GAMMA)
+    if not decompose(jacobian, diagonal, matrix, order):
         return False
-    for stage in range(STAGES):
-        if stage == 0:
-            for i in range(n):
-                right[i] = f[i]
-        else:
-            for i in range(n):
-                moved = y[i]
-                for j in range(stage):
-                    moved += A[stage, j] * u[j, i]
-                new[i] = moved
-            evaluate(rates, x, new, p, right)
-            for i in range(n):
-                coupled = 0.0
-                for j in range(stage):
-                    coupled += COUPLING[stage, j] * u[j, i]
-                right[i] += coupled / h
-        solve(jacobian, diagonal, matrix, pivots, right, u[stage])
     for i in range(n):
-        new[i] += u[STAGES - 1, i]
+        right[i] = new[i] = f[i]
+    for i in range(held, n):
+        new[i] *= MEAN[0]
+    solve(jacobian, diagonal, matrix, order, right, u, 0, held)
+    for stage in range(1, STAGES):
+        for i in range(held):
+            total = y[i]
+            for j in range(stage):
+                total += A[stage, j] * u[j, i]
+            new[i] = total
+        evaluate(rates, x, new, p, right)
+        for i in range(held, n):
+            new[i] += MEAN[stage] * right[i]
+        for i in range(held):
+            total = 0.0
+            for j in range(stage):
+                total += COUPLING[stage, j] * u[j, i]
+            right[i] += total / h
+        solve(jacobian, diagonal, matrix, order, right, u, stage, held)
+    for i in range(held):
+        new[i] += u[LAST, i]
+    for slot in range(size):
+        mean = 0.0
+        for stage in range(STAGES):
+            mean += MEAN[stage] * u[stage, slot]
+        for i in range(held, n):
+            new[i] += jacobian[slot, i] * mean
+    for i in range(held, n):
+        new[i] = y[i] + h * new[i]
     return True
 
 
@@ -200,7 +220,7 @@ def error_norm(y, new, u, rtol, atol):
     """
     total = 0.0
     for i in range(len(atol)):
-        scaled = u[STAGES - 1, i] / (atol[i] + rtol * max(abs(y[i]), abs(new[i])))
+        scaled = u[LAST, i] / (atol[i] + rtol * max(abs(y[i]), abs(new[i])))
         total += scaled * scaled
     for i in range(len(y)):
         total += 0.0 * new[i]  # NaN if any slot is not finite

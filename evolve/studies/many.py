@@ -6,6 +6,7 @@ from concurrent.futures import ProcessPoolExecutor
 from typing import Any, NamedTuple
 
 from evolve.config import Config, read_config
+from evolve.config.schema import ENGINES
 from evolve.errors import ConfigError, EvolveError
 from evolve.integrate import integrate
 
@@ -99,7 +100,7 @@ def _blocks(configs, size):
 
 def _portable(config):
     """A config in what can be pickled: functions of the user's own are read again."""
-    if isinstance(config, Config):
+    if isinstance(config, Config) and config.user_laws:
         return (config.raw, config.files, config.folder, config.name, config.allow_code)
     return config
 
@@ -113,7 +114,7 @@ def _run_one(index, part, engine, reduce):
 
     try:
         config = config_of_parts(*part) if isinstance(part, tuple) else read_config(part)
-        if engine != "auto":
+        if engine not in ("auto", config.values["numerics"]["engine"]):
             config = config.with_values({"numerics.engine": engine})
         history = integrate(config, many=True)
         return Outcome(index, reduce(history) if reduce else history, "")

@@ -13,7 +13,7 @@ from evolve.orbit.lobes import lobe_fraction
 from evolve.stars import MODELS
 from evolve.system.equations import write
 from evolve.system.layout import OTHER, layout
-from evolve.system.plan import choose_laws, parameters_of, plan_of
+from evolve.system.plan import Chosen, choose_laws, parameters_of, plan_of
 
 OVERFILL = 1e-3
 """A start overfilled by more than this share of the lobe is refused."""
@@ -192,6 +192,13 @@ def start_state(pair, carried=None):
     for c in pair.plan.order:
         if not carried and radii[c] > lobes[c] * (1.0 + OVERFILL):
             raise ConfigError(_overfilled(pair, c, radii[c], lobes[c], masses, fractions))
+    for c in pair.plan.order:
+        capture = pair.laws.capture[c]
+        if isinstance(capture, Chosen) and not radii[c] and not capture.keys.speed:
+            raise ConfigError(
+                f"{pair.config.name}: wind.{c}.speed is missing: a component without a radius has "
+                f"no escape speed that {capture.name} could take; allowed: a speed above 0 km/s"
+            )
     state = [*masses.values(), angular_momentum(*masses.values(), separation, eccentricity)]
     if pair.plan.eccentric:
         state.append(eccentricity / sqrt(1.0 - eccentricity**2))

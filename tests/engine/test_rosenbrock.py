@@ -3,22 +3,19 @@
 import numpy as np
 import pytest
 
-from evolve.integrate.advance import DOMAIN, END, FIRED, MORE, STEP_LIMIT, TOO_SMALL, advance
-from evolve.integrate.rosenbrock import decompose, difference_jacobian, solve, step
+from evolve.integrate.advance import DOMAIN, END, FIRED, MORE, STEP_LIMIT, TOO_SMALL, advance, make_buffers, make_room
+from evolve.integrate.rosenbrock import MEAN, decompose, difference_jacobian, solve, step
 
 
-def one_step(rates, y, h, columns=None):
+def one_step(rates, y, h, columns=None, held=None):
     """(new state, stages) of one step from y."""
     n = len(y)
     columns = columns or n
-    f, jacobian, u = np.empty(n), np.empty((n, columns)), np.empty((6, n))
+    f, new, room = np.empty(n), np.empty(n), make_room(n, columns)
     rates(0.0, y, None, f)
-    difference_jacobian(rates, 0.0, y, f, None, np.full(columns, 1e-3), jacobian, np.empty(n))
-    new, matrix = np.empty(n), np.empty((columns, columns))
-    assert step(
-        rates, 0.0, y, f, h, None, jacobian, matrix, np.empty(columns, int), u, np.empty(n), new
-    )
-    return new, u
+    difference_jacobian(rates, 0.0, y, f, None, np.full(columns, 1e-3), room[0], new, room[4])
+    assert step(rates, 0.0, y, f, h, None, room, held or columns, new)
+    return new, room[3]
 
 
 def swing(x, y, p, out):
@@ -46,13 +43,13 @@ def test_linear_systems():
     """Against numpy.linalg, with rows that must be exchanged; quadratures by their own row."""
     random = np.random.default_rng(5)
     for size in range(1, 8):
-        jacobian, right = random.normal(size=(size + 2, size)), random.normal(size=size + 2)
-        matrix, pivots, u = np.empty((size, size)), np.empty(size, int), np.empty(size + 2)
+        jacobian, right = random.normal(size=(size, size + 2)), random.normal(size=size + 2)
+        matrix, order, u = np.empty((size, size)), np.empty(size, int), np.empty(size + 2)
         whole = 1e-3 * np.eye(size + 2)
-        whole[:, :size] -= jacobian
+        whole[:, :size] -= jacobian.T
         positive = np.linalg.det(whole[:size, :size]) > 0.0
-        assert decompose(jacobian, 1e-3, matrix, pivots) == positive
-        solve(jacobian, 1e-3, matrix, pivots, right, u)
+        assert decompose(jacobian, 1e-3, matrix, order) == positive
+        solve(jacobian, 1e-3, matrix, order, right, u[np.newaxis], 0, size + 2)
         assert u == pytest.approx(np.linalg.solve(whole, right), rel=1e-8)
     assert not decompose(np.zeros((2, 2)), 0.0, np.empty((2, 2)), np.empty(2, int))
 
@@ -78,15 +75,22 @@ def test_stiff_decay_in_one_step():
     assert abs(new[0]) < 1e-5
 
 
-def test_a_quadrature_keeps_a_linear_invariant():
-    """What one slot loses the quadrature gains, to rounding, at any tolerance."""
+@pytest.mark.parametrize("held", [1, 2])
+def test_what_hangs_on_the_rest_keeps_a_linear_invariant(held):
+    """What one slot loses another gains, to rounding, at any tolerance: as a quadrature or held."""
 
     def leak(x, y, p, out):
         out[0] = -(y[0] ** 3)
         out[1] = y[0] ** 3
 
-    new, _ = one_step(leak, np.array([1.0, 0.0]), 1.0, columns=1)
+    new, _ = one_step(leak, np.array([1.0, 0.0]), 1.0, columns=1, held=held)
     assert new[0] + new[1] == pytest.approx(1.0, abs=4e-16)
+    assert 0.5 < new[0] < 0.7  # 1/sqrt(3): closed form
+
+
+def test_weights_of_a_quadrature():
+    """They sum to one, as those of any method of order 1 do."""
+    assert MEAN.sum() == pytest.approx(1.0, abs=1e-13)
 
 
 # The walk -----------------------------------------------------------------------------------
@@ -105,11 +109,14 @@ def walk(rates=swing, y=(1.0, 0.3), end=10.0, watches=(), rtol=1e-8, longest=np.
         table[:, 0].astype(int), table[:, 1].copy(), table[:, 2].astype(int),
         table[:, 3].astype(bool),
     )  # fmt: skip
-    return advance(
-        rates, look, (x, end, h, np.array(y)), None, (2, 2),
+    buffers = make_buffers(limits[1], n, n, (2, 2), len(watches))
+    reason, slot, h, rows, events, evaluations, steps = advance(
+        rates, look, (x, end, h, np.array(y)), None,
         (rtol, np.full(n, rtol), np.full(n, 1e-3), longest),
-        (np.full(1, bounds[0]), np.full(1, bounds[1])), columns, limits,
+        (np.full(1, bounds[0]), np.full(1, bounds[1])), columns, limits, buffers,
     )  # fmt: skip
+    xs, states, quantities = (array[:rows] for array in buffers[0][:3])
+    return reason, slot, h, xs, states, quantities, buffers[1][:events], evaluations, steps
 
 
 def test_walk_to_the_end():
