@@ -9,6 +9,7 @@ evolve draw red_dwarf.h5 -o red_dwarf.png --replace
 evolve draw red_dwarf.h5 --figure rate-period --gap -o red_dwarf_rate_period.png --replace
 evolve draw red_dwarf.h5 --figure ledger -o red_dwarf_ledger.png --replace
 evolve draw red_dwarf.h5 --figure pair --at start --at contact --at "period_minimum[-1]" --at end -o red_dwarf_pair.png --replace
+evolve report red_dwarf.h5 -o red_dwarf.html --replace
 evolve run ../configs/neutron_star_conservative.toml -o conservative.h5 --replace > /dev/null
 evolve run ../configs/neutron_star_expelling.toml -o expelling.h5 --replace > /dev/null
 evolve compare conservative.h5 expelling.h5 --on mass_A > conservative_or_expelling.txt

@@ -73,9 +73,14 @@ def _abscissa(history, on, alone):
     rows, time = slice(None), history["time"]
     if not alone:
         return rows, time
+    return rows, places_in_time(history)
+
+
+def places_in_time(history):
+    """Place of every row on the time axis of a history drawn alone, ndarray (n,), 0 to 1."""
     curves = [np.log(history["period"]), history["mass_A"], history["mass_B"],
               history["fill_A"], history["fill_B"], *_log_rates(history)]  # fmt: skip
-    return rows, stretched_time(time, curves)
+    return stretched_time(history["time"], curves)
 
 
 def _rates(history):
