@@ -233,6 +233,7 @@ def rate_period_figure(histories, names=None, gap=False):
     Returns
     -------
     matplotlib.figure.Figure
+        Dotted, the rate above which the disc around the accretor is steady.
     """
     histories = histories if isinstance(histories, (list, tuple)) else [histories]
     names = names or [history.title or f"history {n}" for n, history in enumerate(histories, 1)]
@@ -244,6 +245,7 @@ def rate_period_figure(histories, names=None, gap=False):
             history["period"], rate, label=name, color=SERIES[number % len(SERIES)],
             linestyle=DASHES[number % len(DASHES)],
         )  # fmt: skip
+        _critical_rate(axis, history, SERIES[number % len(SERIES)], first=number == 0)
     axis.set_xscale("log")
     axis.set_yscale("log")
     axis.set_xlabel("period [h]")
@@ -252,10 +254,21 @@ def rate_period_figure(histories, names=None, gap=False):
         axis.axvspan(*OBSERVED_GAP, color="0.88", lw=0, zorder=-5)
         axis.text(np.sqrt(np.prod(OBSERVED_GAP)), 0.02, "observed gap", fontsize=6.5, ha="center",
                   va="bottom", transform=axis.get_xaxis_transform(), color="0.35")  # fmt: skip
-    if len(histories) > 1:
+    if len(axis.lines) > 1:
         axis.legend(loc="best")
     plain_log_ticks(axis.xaxis)
     return figure
+
+
+def _critical_rate(axis, history, colour, first):
+    """The rate above which the accretor's disc is steady, where matter flows."""
+    critical = history.columns.get("disc_critical_rate")
+    if critical is None:
+        return
+    flowing = np.where(np.isfinite(_total_overflow(history)), critical, np.nan)
+    if np.isfinite(flowing).any():
+        label = "steady disc above" if first else None
+        axis.plot(history["period"], flowing, color=colour, lw=0.8, ls=":", alpha=0.8, label=label)
 
 
 def _total_overflow(history):
