@@ -1,13 +1,7 @@
 """A history in words: events, end, ledger."""
 
 from evolve.commands.output import aligned, of_column, quantity, scalar, table
-from evolve.history.ledger import MASS_UNIT, MOMENTUM_UNIT
-
-WORDS = {
-    "waves": "gravitational waves", "braking": "magnetic braking", "wind": "wind",
-    "expelled": "expelled matter", "consequential": "consequential loss", "tides": "tides",
-    "jump": "sudden changes",
-}  # fmt: skip
+from evolve.history.ledger import LAW_WORDS, MASS_UNIT, MOMENTUM_UNIT
 
 
 def summary(history):
@@ -66,8 +60,8 @@ def end_lines(history):
 def _words(entry):
     law, _, component = entry.rpartition("_")
     if law:
-        return f"{WORDS.get(law, law)} of {component}"
-    return WORDS.get(entry, entry)
+        return f"{LAW_WORDS.get(law, law)} of {component}"
+    return LAW_WORDS.get(entry, entry)
 
 
 def ledger_lines(history):

@@ -4,6 +4,12 @@ import numpy as np
 
 MOMENTUM_UNIT = "solMass solRad2 / yr"
 MASS_UNIT = "solMass"
+LAW_WORDS = {
+    "waves": "gravitational waves", "braking": "magnetic braking", "wind": "wind",
+    "expelled": "expelled matter", "consequential": "consequential loss", "tides": "tides",
+    "jump": "sudden changes",
+}  # fmt: skip
+"""What the laws of the books are called."""
 
 
 class Ledger:

@@ -14,10 +14,10 @@ from evolve.figures.history import history_figure, rate_period_figure
 from evolve.figures.ledger import ledger_figure
 from evolve.figures.pair import pair_figure
 from evolve.figures.style import SETTINGS, matplotlib
-from evolve.history.ledger import MASS_UNIT, MOMENTUM_UNIT
+from evolve.history.ledger import LAW_WORDS, MASS_UNIT, MOMENTUM_UNIT
 from evolve.laws.bibliography import text as source_text
 from evolve.page.frames import frames, thinned
-from evolve.page.story import LAWS, law_of, story, time
+from evolve.page.story import law_of, story, time
 
 POLICY = "default-src 'none'; style-src 'unsafe-inline'; script-src 'unsafe-inline'"
 """Nothing is fetched from anywhere; what the page needs is in it."""
@@ -191,7 +191,7 @@ def _events(history):
 
 
 def _entry(name):
-    words = LAWS.get(law_of(name), law_of(name).replace("_", " "))
+    words = LAW_WORDS.get(law_of(name), law_of(name).replace("_", " "))
     return words + (f" of {name[-1]}" if law_of(name) != name else "")
 
 

@@ -7,16 +7,12 @@ import numpy as np
 from evolve.config.units import human
 from evolve.constants import HOURS_PER_YEAR
 from evolve.history.columns import KIND
+from evolve.history.ledger import LAW_WORDS
 
 STARS = {
     "compact": "compact object", "white-dwarf": "white dwarf", "dwarf": "low-mass star",
     "power-law": "star of a power-law radius", "giant": "giant", "main-sequence": "main-sequence star",
     "helium-star": "helium star", "expanding": "expanding star", "track": "star on its own track",
-}  # fmt: skip
-LAWS = {
-    "waves": "gravitational waves", "braking": "magnetic braking", "wind": "winds",
-    "expelled": "expelled matter", "consequential": "consequential loss", "tides": "tides",
-    "jump": "sudden changes",
 }  # fmt: skip
 DRIVERS = {
     "nuclear": "the donor's nuclear evolution", "thermal": "the donor's thermal relaxation",
@@ -111,7 +107,7 @@ def _leaders(history, chapter):
     change = "took" if value < 0.0 else "brought"
     of = f" ({name[-1]})" if name[-2:] in ("_A", "_B") else ""
     return (
-        f"{LAWS.get(law_of(name), name)}{of} {change} {abs(value) / whole:.0%} of the angular momentum "
+        f"{LAW_WORDS.get(law_of(name), name)}{of} {change} {abs(value) / whole:.0%} of the angular momentum "
         "that the orbit lost or gained."
     )
 
@@ -185,7 +181,7 @@ def _books(history):
     shares = sorted(((n, v / whole) for n, v in totals.items() if whole and v), key=lambda s: -abs(s[1]))
     if not shares or len(history.chapters) < 2:
         return ""
-    listed = ", ".join(f"{LAWS.get(name, name)} {share:.1%}" for name, share in shares)
+    listed = ", ".join(f"{LAW_WORDS.get(name, name)} {share:.1%}" for name, share in shares)
     return f"Of the whole change of the orbit's angular momentum, by law: {listed}."
 
 
