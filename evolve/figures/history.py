@@ -4,6 +4,7 @@ import numpy as np
 
 from evolve.config.units import human
 from evolve.constants import HOURS_PER_YEAR
+from evolve.errors import ConfigError
 from evolve.figures.axes import stretched_time, time_ticks
 from evolve.figures.style import (
     COMPONENT,
@@ -234,9 +235,16 @@ def rate_period_figure(histories, names=None, gap=False):
     -------
     matplotlib.figure.Figure
         Dotted, the rate above which the disc around the accretor is steady.
+
+    Raises
+    ------
+    ConfigError
+        If no matter flows in any of them.
     """
     histories = histories if isinstance(histories, (list, tuple)) else [histories]
     names = names or [history.title or f"history {n}" for n, history in enumerate(histories, 1)]
+    if not any(np.isfinite(_total_overflow(history)).any() for history in histories):
+        raise ConfigError(f"{' and '.join(names)}: no overflow to draw against the period")
     figure = new_figure(4.6, 3.4)
     axis = figure.subplots()
     for number, (history, name) in enumerate(zip(histories, names, strict=True)):

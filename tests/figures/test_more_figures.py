@@ -89,6 +89,11 @@ def test_the_discs_critical_rate(dwarf):
     assert good.any() and not good.all()
 
 
+def test_a_rate_that_is_none_is_not_drawn():
+    with pytest.raises(evolve.ConfigError, match="no overflow"):
+        rate_period_figure(run("eccentric_pair"))
+
+
 def test_comparison():
     one, other = run("neutron_star_conservative"), run("neutron_star_expelling")
     found = compare([one, other], ["one", "other"], "mass_A")
