@@ -6,6 +6,10 @@ from evolve.config.units import human
 from evolve.figures.style import plain_log_ticks
 
 
+NO_TIME = 1e-15
+"""Times below this many years are steps to the next float, not times."""
+
+
 def stretched_time(time, curves, weight=1.0):
     """Positions of rows on an axis that is wide where the curves move.
 
@@ -53,15 +57,20 @@ def time_ticks(position, time, count=6):
         to the end instead.
     """
     wanted = np.linspace(0.0, 1.0, count)
-    times = np.interp(wanted, position, time)
+    return wanted.tolist(), time_labels(np.interp(wanted, position, time), time[-1])
+
+
+def time_labels(times, end):
+    """Times in words, each told from the one before: by the time left to the end where three
+    digits do not do it."""
     labels = []
     for value in times:
-        label = human(value, "time", 3) if value else "0"
+        label = human(value, "time", 3) if value > NO_TIME else "0"
         if label in labels:
-            left = time[-1] - value
+            left = end - value
             label = f"end \u2212 {human(left, 'time', 2)}" if left > 0.0 else "end"
         labels.append(label)
-    return wanted.tolist(), labels
+    return labels
 
 
 def named(name, unit):

@@ -2,8 +2,8 @@
 
 import numpy as np
 
-from evolve.config.units import human
 from evolve.errors import ConfigError
+from evolve.figures.axes import time_labels
 from evolve.figures.style import DASHES, SERIES, new_figure, styled
 
 ARM, TRANSFER = 2.5e9, 19.09e-3
@@ -98,17 +98,15 @@ def waves_figure(histories, names=None):
 
 
 def _ages(axis, history, strain, colour):
-    """Dots along the track with the time left to its end (or since the start)."""
+    """Dots along the track with the time since the start, or left to the end."""
     good = np.flatnonzero(np.isfinite(strain) & (strain > 0.0))
     path = np.log(history["wave_frequency"][good])
     if len(good) < 2 or path.max() == path.min():
         return
     way = np.concatenate([[0.0], np.cumsum(np.abs(np.diff(path)))])
     chosen = good[np.unique(np.searchsorted(way, np.linspace(0.0, way[-1], AGES)).clip(0, len(good) - 1))]
-    for row in chosen:
-        axis.plot(history["wave_frequency"][row], strain[row], "o", color=colour, ms=2.5)
-        age = history["time"][row]
-        axis.annotate(
-            human(age, "time", 3) if age > 1e-9 else "0", (history["wave_frequency"][row], strain[row]),
-            (3, 3), textcoords="offset points", fontsize=6,
-        )  # fmt: skip
+    labels = time_labels(history["time"][chosen], history["time"][-1])
+    for row, label in zip(chosen, labels, strict=True):
+        place = (history["wave_frequency"][row], strain[row])
+        axis.plot(*place, "o", color=colour, ms=2.5)
+        axis.annotate(label, place, (3, 3), textcoords="offset points", fontsize=6)

@@ -6,6 +6,7 @@ import numpy as np
 
 from evolve.config.units import human
 from evolve.constants import HOURS_PER_YEAR
+from evolve.figures.axes import NO_TIME
 from evolve.history.columns import KIND
 from evolve.history.ledger import LAW_WORDS
 
@@ -18,8 +19,6 @@ DRIVERS = {
     "nuclear": "the donor's nuclear evolution", "thermal": "the donor's thermal relaxation",
     "dynamical": "an unstable response of the donor", "angular_momentum": "the orbit's loss of angular momentum",
 }  # fmt: skip
-NO_TIME = 1e-15
-"""Times below this many years are steps to the next float, not times."""
 TOLD = {
     "common_envelope": "a common envelope formed around {}", "remnant_formed": "{} had lost its envelope: a white dwarf remained",
     "collapse": "{} collapsed", "kick": "{} was kicked", "circularised": "contact at periastron rounded the orbit",
