@@ -6,12 +6,23 @@ from evolve.errors import ConfigError
 from evolve.figures.axes import time_labels
 from evolve.figures.style import DASHES, SERIES, new_figure, styled
 
-ARM, TRANSFER = 2.5e9, 19.09e-3
-"""Length of an arm [m] and transfer frequency [Hz] of the detector."""
+ARM = 2.5e9
+TRANSFER = 299792458.0 / (2.0 * np.pi * ARM)
+"""Length of an arm [m] and transfer frequency [Hz] of the detector, 19.09 mHz."""
 CONFUSION = {"alpha": 0.138, "beta": -221.0, "kappa": 521.0, "gamma": 1680.0, "knee": 1.13e-3}
 """Of unresolved Galactic pairs after four years."""
 YEARS, SECONDS = 4.0, 3.15576e7
 AGES = 5
+
+
+def instrument_noise(frequency):
+    """Sky-averaged noise of the instrument alone [1/Hz] at a frequency [Hz]; see `detector_noise`."""
+    f = np.asarray(frequency, dtype=float)
+    optical = 1.5e-11**2 * (1.0 + (2e-3 / f) ** 4)
+    acceleration = 3e-15**2 * (1.0 + (0.4e-3 / f) ** 2) * (1.0 + (f / 8e-3) ** 4)
+    ratio = f / TRANSFER
+    shaken = 2.0 * (1.0 + np.cos(ratio) ** 2) * acceleration / (2.0 * np.pi * f) ** 4
+    return 10.0 / (3.0 * ARM**2) * (optical + shaken) * (1.0 + 0.6 * ratio**2)
 
 
 def detector_noise(frequency):
@@ -30,16 +41,10 @@ def detector_noise(frequency):
     ----------
     Robson, Cornish & Liu 2019, CQG 36, 105011, eqs. 1, 10, 11, 13, 14 and table 1.
     """
-    f = np.asarray(frequency, dtype=float)
-    optical = 1.5e-11**2 * (1.0 + (2e-3 / f) ** 4)
-    acceleration = 3e-15**2 * (1.0 + (0.4e-3 / f) ** 2) * (1.0 + (f / 8e-3) ** 4)
-    ratio = f / TRANSFER
-    shaken = 2.0 * (1.0 + np.cos(ratio) ** 2) * acceleration / (2.0 * np.pi * f) ** 4
-    instrument = 10.0 / (3.0 * ARM**2) * (optical + shaken) * (1.0 + 0.6 * ratio**2)
-    c = CONFUSION
+    f, c = np.asarray(frequency, dtype=float), CONFUSION
     bend = -(f ** c["alpha"]) + c["beta"] * f * np.sin(c["kappa"] * f)
     galaxy = 9e-45 * f ** (-7.0 / 3.0) * np.exp(bend) * (1.0 + np.tanh(c["gamma"] * (c["knee"] - f)))
-    return instrument + galaxy
+    return instrument_noise(f) + galaxy
 
 
 def gathered_strain(history, years=YEARS):
@@ -63,8 +68,8 @@ def waves_figure(histories, names=None):
     Returns
     -------
     matplotlib.figure.Figure
-        h0 sqrt(N) of four years against sqrt(f S_n): their ratio is of the order of the
-        signal-to-noise ratio.
+        h0 sqrt(N) of four years against sqrt(f S_n); 2/sqrt(5) of their ratio is the
+        signal-to-noise ratio of a slow pair, averaged over sky and inclination.
 
     Raises
     ------
