@@ -1,7 +1,7 @@
 """A history in words: events, end, ledger."""
 
 from evolve.commands.output import aligned, of_column, quantity, scalar, table
-from evolve.history.ledger import LAW_WORDS, MASS_UNIT, MOMENTUM_UNIT
+from evolve.history.ledger import FLOW_WORDS, LAW_WORDS, MASS_UNIT, MOMENTUM_UNIT
 
 
 def summary(history):
@@ -69,16 +69,13 @@ def ledger_lines(history):
     ledger = history.ledger
     rows = [
         [_words(entry), f"{ledger.total(entry):.6g}", f"{100.0 * ledger.share(entry):.2f} %"]
-        for entry in ledger.angular_momentum
-        if ledger.total(entry) != 0.0
+        for entry in ledger.worth_telling("angular_momentum")
     ]
     lines = aligned([f"angular momentum [{MOMENTUM_UNIT}]", "change", "share"], rows)
     flows = [
-        [entry.replace("_", " of " if entry.startswith(("overflow", "wind", "captured")) else " by "),
-         quantity(ledger.total(entry, "mass"), MASS_UNIT, 5)]
-        for entry in ledger.mass
-        if ledger.total(entry, "mass") != 0.0
-    ]  # fmt: skip
+        [f"{FLOW_WORDS[entry[:-2]]} {entry[-1]}", quantity(ledger.total(entry, "mass"), MASS_UNIT, 5)]
+        for entry in ledger.worth_telling("mass")
+    ]
     if flows:
         lines += ["", *aligned(["mass", "amount"], flows)]
     residuals = ledger.residuals

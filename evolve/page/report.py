@@ -14,7 +14,7 @@ from evolve.figures.history import history_figure, rate_period_figure
 from evolve.figures.ledger import ledger_figure
 from evolve.figures.pair import pair_figure
 from evolve.figures.style import SETTINGS, matplotlib
-from evolve.history.ledger import LAW_WORDS, MASS_UNIT, MOMENTUM_UNIT
+from evolve.history.ledger import FLOW_WORDS, LAW_WORDS, MASS_UNIT, MOMENTUM_UNIT
 from evolve.laws.bibliography import text as source_text
 from evolve.page.frames import frames, thinned
 from evolve.page.story import law_of, story, time
@@ -195,23 +195,15 @@ def _entry(name):
     return words + (f" of {name[-1]}" if law_of(name) != name else "")
 
 
-def _flow(name):
-    """A flow of mass in words: overflow of A, expelled by B."""
-    what, component = name.rsplit("_", 1)
-    return f"{what} {'of' if what in ('overflow', 'wind', 'captured') else 'by'} {component}"
-
-
 def _ledger(history):
     ledger = history.ledger
     momentum = [
         [_entry(name), f"{ledger.total(name):.5g}", f"{100.0 * ledger.share(name):.2f} %"]
-        for name in ledger.angular_momentum
-        if ledger.total(name) != 0.0
+        for name in ledger.worth_telling("angular_momentum")
     ]
     flows = [
-        [_flow(name), human(ledger.total(name, "mass"), "mass", 5)]
-        for name in ledger.mass
-        if ledger.total(name, "mass") != 0.0
+        [f"{FLOW_WORDS[name[:-2]]} {name[-1]}", human(ledger.total(name, "mass"), "mass", 5)]
+        for name in ledger.worth_telling("mass")
     ]
     parts = [_table(["angular momentum of the orbit", f"change [{MOMENTUM_UNIT}]", "share"], momentum)]
     if flows:
