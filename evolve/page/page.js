@@ -62,3 +62,8 @@ for (const panel of document.querySelectorAll(".panel")) {
   panel.hidden = marker.hidden = false;
   show(Number(slider.value));
 }
+
+// On paper nothing can be opened: print the config as well.
+addEventListener("beforeprint", () => {
+  for (const folded of document.querySelectorAll("details")) folded.open = true;
+});
