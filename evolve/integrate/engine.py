@@ -27,6 +27,8 @@ from evolve.integrate.stretch import shrinking_rate
 SWITCHES = 4
 """Numbers at the head of the flat array, before the origin of time: flow and braking of each."""
 FIRST = SWITCHES + 1
+MOST_KEPT = 200
+"""Engines kept on disk; older ones are of texts that have changed since."""
 OPTIONS = {"error_model": "numpy", "nogil": True}
 BARE = {**OPTIONS, "_nrt": False}
 """Of the walk, which allocates nothing: without counting references it takes half as long."""
@@ -172,6 +174,23 @@ def _listed(name, places):
 
 
 def _compiled(pair, text, classes, user):
+    """The Engine of a pair; a CannotCompile if numba refuses it."""
+    import numba
+
+    for kept in (True, False):
+        try:
+            return _built(pair, text, classes, user, kept)
+        except numba.core.errors.NumbaError as error:
+            lines = [line for line in str(error).splitlines() if line and "Failed in" not in line]
+            return CannotCompile(lines[0])
+        except Exception:  # what is kept on disk is damaged: compile anew
+            if not kept:
+                raise
+            _advance.cache_clear()
+    return None
+
+
+def _built(pair, text, classes, user, kept):
     import numba
 
     namespace = {**user, **classes, "cfunc": numba.cfunc, "carray": numba.carray}
@@ -180,13 +199,22 @@ def _compiled(pair, text, classes, user):
     namespace["shrinking_rate"] = shrinking_rate
     for name in ("rates", "quantities", "gauges", "shrinking_rate"):
         namespace[name] = jitted(namespace[name], done)
-    advance = _advance()
-    try:
-        module = _run(text, [pair.equations, *_sources(user.values())], namespace)
-    except numba.core.errors.NumbaError as error:
-        lines = [line for line in str(error).splitlines() if line and "Failed in" not in line]
-        return CannotCompile(lines[0])
-    return Engine(advance, module.rates_at.address, module.look.address, module)
+    module = _run(text, [pair.equations, *_sources(user.values())], namespace, kept)
+    engine = Engine(_advance(kept), module.rates_at.address, module.look.address, module)
+    _try_out(engine, pair)
+    return engine
+
+
+def _try_out(engine, pair):
+    """No step at all, which loads or compiles all there is."""
+    core, sizes = len(pair.layout.core), (len(pair.layout.quantities), len(pair.layout.gauges))
+    state = np.array([*pair.start, *[1.0] * (len(pair.layout.ledger) + 1)])
+    watches = (np.zeros(1, np.int64), np.zeros(1), np.zeros(1, np.int64), np.zeros(1, np.bool_))
+    engine.advance(
+        engine.rates, engine.look, (0.0, 1.0, 1.0, state), flat(pair.parameters),
+        (1e-6, np.ones(core), np.ones(core), 1.0), (np.zeros(core), np.ones(core)), watches, (0, 0),
+        walk.make_buffers(1, len(state), core, sizes, 1),
+    )  # fmt: skip
 
 
 def _sources(functions):
@@ -195,7 +223,7 @@ def _sources(functions):
 
 
 @lru_cache(maxsize=1)
-def _advance():
+def _advance(kept):
     """The walk, compiled to call the equations by their addresses."""
     import numba
 
@@ -206,7 +234,7 @@ def engine(rates, look, start, p, control, bounds, watches, limits, buffers):
 """
     done = {rosenbrock.evaluate: _caller(3), walk.observe: _caller(4)}
     namespace = {"njit": numba.njit, "advance": jitted(walk.advance, done, BARE)}
-    return _run(text, [], namespace).engine
+    return _run(text, [], namespace, kept).engine
 
 
 def _caller(arrays):
@@ -234,9 +262,10 @@ def _caller(arrays):
     return intrinsic(lambda context, f, x, y, p, seen, read: typed(f, x, y, p, seen, read))
 
 
-def _run(text, depends, namespace):
-    """Execute a text that compiles what it defines, with its machine code kept on disk."""
-    path = _cached_file(text, depends)
+def _run(text, depends, namespace, kept):
+    """Execute a text that compiles what it defines, with its machine code kept on disk; `kept`
+    says whether what is there already may be used."""
+    path = _cached_file(text, depends, kept)
     module = types.ModuleType(path.stem if path else "engine_unkept")
     sys.modules[module.__name__] = module  # numba looks it up by name when it loads its code
     namespace |= {"OPTIONS": OPTIONS, "BARE": BARE, "CACHED": path is not None, "__name__": module.__name__}
@@ -245,7 +274,7 @@ def _run(text, depends, namespace):
     return module
 
 
-def _cached_file(text, depends):
+def _cached_file(text, depends, kept):
     """A file that stands for a text and all it depends on, or None if there is no room."""
     import numba
 
@@ -256,10 +285,20 @@ def _cached_file(text, depends):
     folder = Path(os.environ.get("XDG_CACHE_HOME") or Path.home() / ".cache") / "evolve"
     try:
         folder.mkdir(parents=True, exist_ok=True)
+        if not kept:
+            _forget(folder, name)
         if not (folder / name).exists():
+            for old in sorted(folder.glob("engine_*.py"), key=os.path.getmtime)[:-MOST_KEPT]:
+                _forget(folder, old.name)
             with NamedTemporaryFile("w", dir=folder, suffix=".tmp", delete=False) as file:
                 file.write(text)
             os.replace(file.name, folder / name)
     except OSError:
         return None
     return folder / name
+
+
+def _forget(folder, name):
+    """Remove a kept engine with its machine code."""
+    for path in [folder / name, *folder.glob(f"__pycache__/{name.removesuffix('.py')}*")]:
+        path.unlink(missing_ok=True)

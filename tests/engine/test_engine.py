@@ -1,5 +1,7 @@
 """The compiled engine: against published numbers, against the same walk plain, and when it fails."""
 
+import os
+import subprocess
 import sys
 
 import numpy as np
@@ -127,6 +129,37 @@ def test_without_numba(monkeypatch):
         compiled(RED_DWARF)
     (outcome,) = evolve.run_many([evolve.read_config(RED_DWARF).with_values({"end.time": "1 Myr"})])
     assert outcome.value.statistics["engine"] == "plain"
+
+
+RUN = """
+import evolve
+config = evolve.read_config({config!r}).with_values({{"numerics.engine": "compiled", "end.time": "1 Myr"}})
+history = evolve.run(config)
+print(history.outcome, history.statistics["engine"], history["period"][-1])
+"""
+
+
+@pytest.mark.slow
+def test_damaged_machine_code_is_compiled_anew(tmp_path):
+    """Cut short on disk, or in a folder that cannot be written: the same history all the same."""
+
+    def told(folder):
+        environment = {**os.environ, "XDG_CACHE_HOME": str(folder)}
+        code = RUN.format(config=str(RED_DWARF))
+        done = subprocess.run(
+            [sys.executable, "-c", code], env=environment, capture_output=True, text=True, check=True
+        )
+        return done.stdout
+
+    first = told(tmp_path)
+    kept = list(tmp_path.glob("evolve/__pycache__/*.nbc"))
+    assert first.startswith("time compiled") and len(kept) == 3
+    for path in kept:
+        path.write_bytes(path.read_bytes()[:1000])
+    assert told(tmp_path) == first
+    assert all(path.stat().st_size > 1000 for path in tmp_path.glob("evolve/__pycache__/*.nbc"))
+    (tmp_path / "file").write_text("")
+    assert told(tmp_path / "file") == first
 
 
 def test_interrupted_between_calls_keeps_what_was_computed():
