@@ -5,7 +5,6 @@ in any order. A block takes about a second: long enough to make its transport ch
 enough that a kill loses little.
 """
 
-import threading
 from concurrent.futures import FIRST_COMPLETED, BrokenExecutor, ProcessPoolExecutor, wait
 from contextlib import contextmanager
 from time import perf_counter
@@ -15,7 +14,7 @@ from evolve.config.read import config_of_parts
 from evolve.errors import EvolveError, MachineError, MissingExtra
 from evolve.integrate import integrate
 from evolve.studies.journal import clipped
-from evolve.studies.many import AHEAD, quiet_worker
+from evolve.studies.many import AHEAD, worker_starts
 from evolve.studies.results import OUTCOMES, uninterrupted
 
 SECONDS, LARGEST = 0.5, 512
@@ -121,7 +120,7 @@ def executor(workers, cluster=None):
             lanes = max(sum(client.nthreads().values()), 1)
             yield client.get_executor(pure=False), lanes
         return
-    pool = ProcessPoolExecutor(workers, initializer=_worker_starts)
+    pool = ProcessPoolExecutor(workers, initializer=worker_starts)
     try:
         with _failing("a worker process"):
             yield pool, workers
@@ -154,23 +153,6 @@ def _client(address):
         return Client(address, set_as_default=False)
     except (OSError, ValueError) as error:
         raise MachineError(f"--cluster {address}: no dask scheduler answers there ({error})") from error
-
-
-def _worker_starts():
-    """One thread, Ctrl-C left to the parent, and an end when the parent is killed.
-
-    A worker that outlived its parent would hold the journal's lock and wait for ever.
-    """
-    quiet_worker()
-    threading.Thread(target=_end_with_parent, daemon=True).start()
-
-
-def _end_with_parent():
-    import os
-    from multiprocessing import connection, parent_process
-
-    connection.wait([parent_process().sentinel])
-    os._exit(1)
 
 
 def run_block(task, indices, changes):

@@ -1,6 +1,7 @@
 """Many histories: the one call every study uses."""
 
 import os
+import threading
 from collections import deque
 from concurrent.futures import ProcessPoolExecutor
 from typing import Any, NamedTuple
@@ -59,7 +60,7 @@ def run_many(configs, workers=1, reduce=None, block=8, engine="auto"):
         for first, parts in blocks:
             yield from _run_block(first, parts, engine, reduce)
         return
-    with ProcessPoolExecutor(workers, initializer=quiet_worker) as pool:
+    with ProcessPoolExecutor(workers, initializer=worker_starts) as pool:
         yield from in_order(
             (pool.submit(_run_block, first, parts, engine, reduce) for first, parts in blocks),
             AHEAD * workers,
@@ -77,13 +78,22 @@ def in_order(futures, ahead):
         yield from waiting.popleft().result()
 
 
-def quiet_worker():
-    """What a worker process sets first: one thread, and Ctrl-C left to the parent."""
+def worker_starts():
+    """What a worker process does first: one thread, Ctrl-C left to the parent, and an end when the
+    parent is killed. A worker that outlived it would wait for ever, and hold a journal's lock."""
     import signal
 
     signal.signal(signal.SIGINT, signal.SIG_IGN)
     for name in ("OMP_NUM_THREADS", "OPENBLAS_NUM_THREADS", "MKL_NUM_THREADS"):
         os.environ[name] = "1"
+    threading.Thread(target=_end_with_parent, daemon=True).start()
+
+
+def _end_with_parent():
+    from multiprocessing import connection, parent_process
+
+    connection.wait([parent_process().sentinel])
+    os._exit(1)
 
 
 def _blocks(configs, size):
