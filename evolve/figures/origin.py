@@ -84,9 +84,9 @@ def _line(figure, axis, found, axes):
 
 
 def branch_words(branch):
-    """A branch in words: ("overflow_A", 1, "rising") is "overflow of A 1, period rising"."""
+    """A branch in words: ("overflow_A", 1, "rising") is "overflow of A, contact 1, period rising"."""
     regime, contacts, word = branch
-    count = f" {contacts}" if regime.startswith("overflow") else ""
+    count = f", contact {contacts}" if regime.startswith("overflow") else ""
     return f"{regime.replace('_', ' of ')}{count}, period {word}"
 
 
