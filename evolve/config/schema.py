@@ -228,12 +228,16 @@ SECTIONS = {
             "speed": Entry("of the kick", "speed", 0.0, 1e9, default=0.0),
             "polar": Entry("angle from the star's orbital velocity", "angle", 0.0, pi, default=0.0),
             "azimuth": Entry(
-                "angle about it; 90 deg is along the orbit's axis", "angle", -2 * pi, 2 * pi,
-                default=0.0,
+                "angle about it; 0 is away from the companion, 90 deg along the orbit's axis",
+                "angle", -2 * pi, 2 * pi, default=0.0,
+            ),
+            "anomaly": Entry(
+                "true anomaly then, on an eccentric orbit; 180 deg is apastron", "angle",
+                0.0, 2 * pi, default=pi,
             ),
             "seed": Entry(
-                "draws the direction, isotropic, in place of the angles", "number", 0, 2**32 - 1,
-                kind="whole",
+                "draws the direction, isotropic, and the moment, in place of the angles",
+                "number", 0, 2**32 - 1, kind="whole",
             ),
         },
         by_component=True,

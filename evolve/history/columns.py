@@ -34,6 +34,7 @@ COLUMNS = {
     "separation": Column("solRad", "separation (semi-major axis)"),
     "period": Column("h", "orbital period"),
     "eccentricity": Column("", "eccentricity"),
+    "systemic_speed": Column("km / s", "speed that sudden losses and kicks gave the pair"),
     "mass_ratio": Column("", "mass ratio, donor over accretor"),
     "angular_momentum": Column(MOMENTUM, "orbital angular momentum"),
     "total_angular_momentum": Column(MOMENTUM, "orbital and spin angular momentum"),

@@ -2,6 +2,7 @@
 
 import numpy as np
 
+from evolve.constants import KM_S
 from evolve.history import COLUMNS, Chapter, Event, History, Ledger
 from evolve.history.history import present_versions
 from evolve.integrate.derive import FLOW_COLUMNS, columns_of
@@ -53,6 +54,9 @@ def _columns(run):
         table = run.recorder.quantities(first, last)
         q = dict(zip(act.pair.layout.quantities, table.T, strict=True))
         parts.append(columns_of(act.pair, time[first:last], q, donor[first:last]))
+    for part, speed in zip(parts, _systemic_speeds(run, bounds), strict=True):
+        if speed is not None:
+            part["systemic_speed"] = np.full(len(part["time"]), speed)
     names = dict.fromkeys(name for name in COLUMNS if any(name in part for part in parts))
     return {
         name: np.concatenate([
@@ -61,6 +65,16 @@ def _columns(run):
         ])
         for name in names
     }  # fmt: skip
+
+
+def _systemic_speeds(run, bounds):
+    """Speed of the centre of mass in each act [km/s]; None each without sudden changes.
+
+    Several changes add by their squares: their directions are unrelated.
+    """
+    acts = [act for act, last in zip(run.acts, bounds[1:], strict=True) if act.row < last]
+    squares = np.cumsum([act.speed**2 for act in acts])
+    return KM_S * np.sqrt(squares) if squares[-1] > 0.0 else [None] * len(acts)
 
 
 def _absent(name):

@@ -4,12 +4,13 @@ Each gives the new config values of a pair, from which the next chapter's equati
 built; the run carries the state over.
 """
 
-from math import acos, pi
+from math import acos, pi, sqrt
 from random import Random
 from typing import NamedTuple
 
+from evolve.constants import KM_S, G
 from evolve.laws.envelope import survives, webbink_1984
-from evolve.laws.kick import collapsed_mass, sudden_change
+from evolve.laws.kick import collapsed_mass, sudden_change, true_anomaly
 from evolve.system.layout import OTHER
 
 HELIUM_CORE = 0.5
@@ -21,13 +22,29 @@ class Becoming(NamedTuple):
 
     values      of the component, as a completed config has them
     mass        [solMass]
-    separation  [solRad], eccentricity of the new orbit
+    separation  [solRad], eccentricity of the new orbit; < 0 and > 1 if they part
+    speed       of the new centre of mass against the old one [solRad/yr]
     """
 
     values: dict
     mass: float
     separation: float
     eccentricity: float
+    speed: float = 0.0
+
+    @property
+    def bound(self):
+        """Whether the pair stays together."""
+        return 0.0 < self.separation < float("inf")
+
+    def parting(self, mass_other):
+        """Words for a pair that does not: the masses, and the speed far apart."""
+        total = self.mass + mass_other
+        speed = sqrt(max(-G * total / self.separation, 0.0)) * KM_S
+        return (
+            f"{self.mass:.4g} and {mass_other:.4g} Msun part with {speed:.3g} km/s, on a "
+            f"hyperbola of eccentricity {self.eccentricity:.4g}"
+        )
 
 
 def remnant(values, c, q):
@@ -78,7 +95,7 @@ def collapse(values, c, q, kick):
 
     The white dwarf loses the binding energy of the neutron star at once (Lattimer & Yahil
     1989); the orbit answers as to a sudden loss with the config's kick (Blaauw 1961; Hills
-    1983). None if the pair does not stay together.
+    1983).
     """
     mass = getattr(q, f"mass_{c}")
     kind = "neutron-star" if values["star"] == "white-dwarf" else "black-hole"
@@ -95,20 +112,24 @@ def sudden_loss(values, c, q, kick):
 def _after_kick(new, left, c, q, kick):
     if left == getattr(q, f"mass_{c}") and not kick["speed"]:
         return Becoming(new, left, q.separation, q.eccentricity)
-    polar, azimuth = direction(kick)
+    polar, azimuth, anomaly = direction(kick, q.eccentricity)
     after = sudden_change(
         getattr(q, f"mass_{c}"), left, getattr(q, f"mass_{OTHER[c]}"), q.separation,
-        kick["speed"], polar, azimuth,
+        kick["speed"], polar, azimuth, q.eccentricity, anomaly,
     )  # fmt: skip
-    return Becoming(new, left, after.separation, after.eccentricity) if after.bound else None
+    return Becoming(new, left, after.separation, after.eccentricity, after.speed)
 
 
-def direction(kick):
-    """Polar angle and azimuth of a kick [rad]: as given, or isotropic by its seed."""
+def direction(kick, eccentricity=0.0):
+    """Polar angle, azimuth and true anomaly of a kick [rad]: as given, or drawn by its seed.
+
+    Drawn directions are isotropic, drawn moments uniform in time.
+    """
     if kick["seed"] is None:
-        return kick["polar"], kick["azimuth"]
+        return kick["polar"], kick["azimuth"], kick["anomaly"]
     generator = Random(kick["seed"])
-    return acos(1.0 - 2.0 * generator.random()), 2.0 * pi * generator.random()
+    polar, azimuth = acos(1.0 - 2.0 * generator.random()), 2.0 * pi * generator.random()
+    return polar, azimuth, true_anomaly(2.0 * pi * generator.random(), eccentricity)
 
 
 __all__ = ["Becoming", "collapse", "common_envelope", "direction", "remnant", "sudden_loss"]

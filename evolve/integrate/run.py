@@ -10,7 +10,7 @@ from evolve.integrate.outcomes import sentence
 from evolve.integrate.recorder import Recorder
 from evolve.integrate.stretch import InspiralStretch, TimeStretch
 from evolve.integrate.turns import Act, Turns
-from evolve.integrate.watches import CONTACT_MARGIN, WAKE, watches_for
+from evolve.integrate.watches import CONTACT_MARGIN, WAKE, noted, watches_for
 
 CHATTER = 25
 """So many events in a row without time passing between them are a fault, not a history."""
@@ -248,15 +248,20 @@ class Run(Turns):
         quantities = self.now()
         row = self.recorder.add(self.time, self.state, quantities)
         self.time = self.recorder[row].time
-        if self.openings and self.openings[-1].row < row - 1 and self.acts[-1].row < row:
-            gauge = self.pair.layout.gauges.index("period_rate")
-            before = self.pair.gauges(self.recorder[row - 1].quantities)[gauge]
-            after = self.pair.gauges(quantities)[gauge]
-            if before < 0.0 < after:
-                self._mark("period_minimum", "", row)
-            elif after < 0.0 < before:
-                self._mark("period_maximum", "", row)
+        if self.openings and self.acts[-1].row < row:
+            self._note_jumps(row, quantities)
         self.openings.append(Opening(row, self.regime, event))
+
+    def _note_jumps(self, row, quantities):
+        """Events that change nothing, met where the equations jump from one row to the next."""
+        before = self.pair.gauges(self.recorder[row - 1].quantities)
+        after = self.pair.gauges(quantities)
+        for watch in noted(self):
+            if watch.name.startswith("period") and self.openings[-1].row == row - 1:
+                continue  # nothing has happened yet: a flow joins the equations
+            old, new = before[watch.gauge] - watch.level, after[watch.gauge] - watch.level
+            if old * new < 0.0 and watch.direction * (new - old) >= 0.0:
+                self._mark(watch.name, watch.component, row)
 
     def _finish(self, outcome, detail=""):
         if self.outcome:

@@ -20,10 +20,14 @@ DETAILS = {
 
 
 class Act(NamedTuple):
-    """From this row on the pair is this one: a star has become something else."""
+    """From this row on the pair is this one: a star has become something else.
+
+    `speed` is what a sudden loss or a kick then gave the pair's centre of mass [solRad/yr].
+    """
 
     row: int
     pair: object
+    speed: float = 0.0
 
 
 class Turns:
@@ -80,6 +84,9 @@ class Turns:
             if self.law == "atmosphere" and self.pair.models[c].overflows:
                 self._switch(f"flow_{c}", getattr(quantities, f"excess_{c}") > WAKE)
 
+    def _on_circularised(self, c):
+        self._set("eccentricity_state", 0.0)
+
     def _on_detachment(self, c):
         self.in_contact[c] = False
         if self.law in ("polytrope", "locked"):
@@ -106,17 +113,15 @@ class Turns:
     def _on_kick(self, c):
         self.kicked.add(c)
         values, quantities = self.pair.config.values, self.now()
-        if quantities.eccentricity > 0.0:
-            return self._finish("failed", "a kick is known for circular orbits only")
         if values["kick"][c]["mass_lost"] >= getattr(quantities, f"mass_{c}"):
             return self._finish("failed", f"{c} has no such mass to lose")
         after = sudden_loss(values[c], c, quantities, values["kick"][c])
         return self._sudden(c, after, (c,))
 
     def _sudden(self, c, after, kept=()):
-        if after is None:
+        if not after.bound:
             self._mark("unbound", "", len(self.recorder) - 1)
-            return self._finish("unbound")
+            return self._finish("unbound", after.parting(getattr(self.now(), f"mass_{OTHER[c]}")))
         return self._become(c, after, kept)
 
     def _unstable(self, c):
@@ -138,6 +143,7 @@ class Turns:
         if after is None:
             self._mark("merger", "", len(self.recorder) - 1)
             return self._finish("merger")
+        self._mark("remnant_formed", c, len(self.recorder) - 1)
         self._become(c, after)
         self.opening_event = self.opening_event or "common_envelope"
         return None
@@ -158,7 +164,7 @@ class Turns:
         config = replace(self.pair.config, values=values)
         self.pair = Pair(config, {s: self.pair.star_keys[s] for s in (other, *kept)}, old)
         self.engine = None
-        self.acts.append(Act(len(self.recorder), self.pair))
+        self.acts.append(Act(len(self.recorder), self.pair, after.speed))
         self.switches = self.pair.first_switches()
         self.in_contact = {"A": False, "B": False}
         self.inspiral = self._inspirals()

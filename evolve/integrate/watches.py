@@ -7,6 +7,7 @@ integration goes on.
 from math import log
 from typing import NamedTuple
 
+from evolve.laws.acceptance import EDGE
 from evolve.stars.giant import THINNEST
 
 CONTACT_MARGIN = 1e-9
@@ -29,6 +30,8 @@ STABLE_MARGIN = 1e-5
 inverse of it, and no step reaches 0."""
 CEILING_MARGIN = 1e-3
 """A ceiling counts as reached this far below it, and as left three times as far."""
+ROUND = 1e-4
+"""An eccentricity that falls below this is none from there on."""
 WAKE, SLEEP = -30.0, -32.0
 """(R - R_L)/H at which the atmosphere's flow joins and leaves the equations."""
 
@@ -61,12 +64,7 @@ def watches_for(run):
     -------
     list of Watch
     """
-    names = run.pair.layout.gauges
-
-    def watch(name, component, gauge, level, direction, **more):
-        return Watch(name, component, names.index(gauge), level, direction, **more)
-
-    found = []
+    names, watch, found = run.pair.layout.gauges, watch_maker(run), []
     for c in "AB":
         if run.pair.models[c].overflows:
             found += _lobe_watches(run, c, watch)
@@ -77,9 +75,22 @@ def watches_for(run):
         found.append(watch("validity", c, f"mass_{c}", log(high), +1, end="validity"))
     if not any(run.pair.models[c].overflows for c in "AB"):
         found.append(watch("merger", "", "merger", 0.0, +1, end="merger"))
-    found += _end_watches(run, watch) + _noted(run, watch)
+    if "eccentricity" in names and not run.inspiral:
+        level = log(ROUND)
+        found.append(watch("circularised", "", "eccentricity", level, -1, at_once=False))
+    found += _end_watches(run, watch) + noted(run)
     asked = run.end["event"]
     return [entry._replace(terminal=True) if entry.name == asked else entry for entry in found]
+
+
+def watch_maker(run):
+    """Makes a Watch of a gauge's name."""
+    names = run.pair.layout.gauges
+
+    def watch(name, component, gauge, level, direction, **more):
+        return Watch(name, component, names.index(gauge), level, direction, **more)
+
+    return watch
 
 
 def _lobe_watches(run, c, watch):
@@ -101,7 +112,7 @@ def _lobe_watches(run, c, watch):
         ]
     gone = watch("detachment", c, f"rate_{c}", threshold - CONTACT_MARGIN, -1)
     if law == "polytrope":
-        gone = watch("detachment", c, f"fill_{c}", 0.0, -1)
+        gone = watch("detachment", c, f"fill_{c}", -CONTACT_MARGIN, -1)
     found = [
         gone,
         watch("unstable_overflow", c, f"stability_{c}", 0.0, -1, terminal=False, at_once=False),
@@ -162,10 +173,11 @@ def _end_watches(run, watch):
     return found
 
 
-def _noted(run, watch):
-    """Events that change nothing in the equations."""
+def noted(run):
+    """Events that change nothing in the equations: a list of Watch."""
     if run.inspiral:
         return []
+    watch = watch_maker(run)
     found = [
         watch("period_minimum", "", "period_rate", 0.0, +1, terminal=False),
         watch("period_maximum", "", "period_rate", 0.0, -1, terminal=False),
@@ -178,6 +190,10 @@ def _noted(run, watch):
             for name, direction in (("ceiling_reached", +1), ("ceiling_left", -1)):
                 level = log(1.0 - CEILING_MARGIN * (2 - direction))
                 found.append(watch(name, c, f"ceiling_{c}", level, direction, terminal=False))
+        if f"burning_{c}" in run.pair.layout.gauges:
+            for name, direction in (("burning_begins", +1), ("burning_ends", -1)):
+                level = direction * EDGE  # the ends of the edge, across which ever more is kept
+                found.append(watch(name, c, f"burning_{c}", level, direction, terminal=False))
     if any(run.pair.models[c].overflows for c in "AB") or any(run.pair.laws.wind.values()):
         found.append(watch("masses_equal", "", "mass_ratio", 0.0, 0, terminal=False))
     if "darwin" in run.pair.layout.gauges:

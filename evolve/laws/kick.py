@@ -1,6 +1,6 @@
 """Sudden loss of mass, with or without a kick: the orbit after a supernova or a collapse."""
 
-from math import atan2, cos, hypot, sin, sqrt
+from math import atan2, cos, hypot, pi, sin, sqrt
 from typing import NamedTuple
 
 from evolve.constants import G
@@ -24,9 +24,10 @@ class Aftermath(NamedTuple):
 
 
 def sudden_change(
-    mass_before, mass_after, mass_other, separation, kick=0.0, polar=0.0, azimuth=0.0
-):
-    """The orbit after one star of a circular pair changes its mass at once, and is kicked.
+    mass_before, mass_after, mass_other, separation, kick=0.0, polar=0.0, azimuth=0.0,
+    eccentricity=0.0, anomaly=0.0,
+):  # fmt: skip
+    """The orbit after one star of a pair changes its mass at once, and is kicked.
 
     Parameters
     ----------
@@ -35,14 +36,19 @@ def sudden_change(
     mass_other : float  [solMass]
         Of its companion, which is left alone.
     separation : float  [solRad]
-        Of the circular orbit before.
+        Semi-major axis before.
     kick : float  [solRad/yr]
         Speed of the kick.
     polar : float  [rad]
-        Angle between the kick and the star's orbital velocity.
+        Angle between the kick and the transverse direction in the orbital plane: on a circle,
+        at periastron and at apastron that of the star's orbital velocity.
     azimuth : float  [rad]
-        Of the kick about that velocity: 0 towards or away from the companion, pi/2 along
-        the normal of the orbital plane.
+        Of the kick about that direction: 0 away from the companion, pi/2 along the normal of
+        the orbital plane.
+    eccentricity : float
+        Before, 0 <= e < 1.
+    anomaly : float  [rad]
+        True anomaly at that moment; of no account on a circle.
 
     Returns
     -------
@@ -58,29 +64,59 @@ def sudden_change(
     Blaauw 1961, Bull. Astron. Inst. Netherlands 15, 265; Hills 1983, ApJ 267, 322.
     """
     before, after = mass_before + mass_other, mass_after + mass_other
-    speed = sqrt(G * before / separation)
-    along = speed + kick * cos(polar)
-    radial, normal = kick * sin(polar) * cos(azimuth), kick * sin(polar) * sin(azimuth)
+    distance = separation * (1.0 - eccentricity**2) / (1.0 + eccentricity * cos(anomaly))
+    scale = sqrt(G * before / (separation * (1.0 - eccentricity**2)))
+    swing, sweep = scale * eccentricity * sin(anomaly), scale * (1.0 + eccentricity * cos(anomaly))
+    # relative velocity of the star after it: outward, along its way, normal to the plane
+    radial = swing + kick * sin(polar) * cos(azimuth)
+    along = sweep + kick * cos(polar)
+    normal = kick * sin(polar) * sin(azimuth)
     square = along * along + radial * radial + normal * normal
-    inverse = 2.0 / separation - square / (G * after)
+    inverse = 2.0 / distance - square / (G * after)
     # e^2 by the eccentricity vector, which keeps its digits where 1 - h^2/(G M a) loses them
     transverse = along * along + normal * normal
-    aside = transverse * separation / (G * after) - 1.0
-    across = radial * sqrt(transverse) * separation / (G * after)
-    own = speed * mass_other / before
-    companion = -speed * mass_before / before
-    drift = sqrt(
-        (mass_after * (own + kick * cos(polar)) + mass_other * companion) ** 2
-        + (mass_after * radial) ** 2
-        + (mass_after * normal) ** 2
-    )
+    aside = transverse * distance / (G * after) - 1.0
+    across = radial * sqrt(transverse) * distance / (G * after)
+    # in the old centre-of-mass frame the star has other/before of the relative velocity
+    drift = [
+        (mass_after * (was * mass_other / before + new - was) - mass_other * was * mass_before / before)
+        / after
+        for was, new in ((swing, radial), (sweep, along), (0.0, normal))
+    ]
     return Aftermath(
         separation=1.0 / inverse if inverse != 0.0 else float("inf"),
         eccentricity=hypot(aside, across),
         tilt=atan2(normal, along),
-        speed=drift / after,
+        speed=hypot(*drift),
         bound=inverse > 0.0,
     )
+
+
+def true_anomaly(mean, eccentricity):
+    """True anomaly from the mean one, by bisection of Kepler's equation.
+
+    Parameters
+    ----------
+    mean : float  [rad]
+        0..2 pi.
+    eccentricity : float
+        0 <= e < 1.
+
+    Returns
+    -------
+    float  [rad]
+        -pi..pi.
+
+    References
+    ----------
+    Kepler's equation, M = E - e sin E; tan(f/2) = sqrt((1+e)/(1-e)) tan(E/2).
+    """
+    low, high = 0.0, 2.0 * pi
+    for _ in range(60):  # to the last bit of a float
+        middle = 0.5 * (low + high)
+        low, high = (low, middle) if middle - eccentricity * sin(middle) > mean else (middle, high)
+    half = 0.5 * (low + high) / 2.0
+    return 2.0 * atan2(sqrt(1.0 + eccentricity) * sin(half), sqrt(1.0 - eccentricity) * cos(half))
 
 
 def collapsed_mass(mass, coefficient=0.084):
@@ -105,4 +141,4 @@ def collapsed_mass(mass, coefficient=0.084):
     return 2.0 * mass / (1.0 + sqrt(1.0 + 4.0 * coefficient * mass))
 
 
-__all__ = ["Aftermath", "collapsed_mass", "sudden_change"]
+__all__ = ["Aftermath", "collapsed_mass", "sudden_change", "true_anomaly"]

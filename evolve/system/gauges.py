@@ -26,7 +26,8 @@ def gauge_expressions(plan):
         convective_c: 1 with a convective envelope, else 0;
         phase_c: the clock
         of its model; envelope_c: mass outside the core [solMass]; ceiling_c: ln of what c
-        accepts over its ceiling;
+        accepts over its ceiling; burning_c: ln of what reaches c over the least that burns
+        steadily there; eccentricity: ln e;
         darwin: positive when no stable synchronous orbit exists, (I_A + I_B) n > J/3 (Hut
         1980, A&A 92, 167); merger: positive when a lobe or the last stable orbit is filled; log_period: ln P in
         yr; period_rate: d ln P/dt [1/yr]; mass_ratio: ln(m_A/m_B); time [yr].
@@ -59,6 +60,12 @@ def gauge_expressions(plan):
             gauges[f"ceiling_{c}"] = (
                 f"log(max(accepted_{c}, 1e-300)) - log(max(ceiling_{c}, 1e-300))"
             )
+            if plan.components[c].ceiling == "band":
+                gauges[f"burning_{c}"] = (
+                    f"log(max(accepted_{c} + expelled_{c}, 1e-300)) - log(max(edge_{c}, 1e-300))"
+                )
+    if plan.eccentric:
+        gauges["eccentricity"] = "log(max(eccentricity, 1e-300))"
     spins = [f"spin_momentum_{c} / spin_{c}" for c in plan.order if plan.components[c].tides]
     if spins:  # moments of inertia of the stars whose spins are followed
         gauges["darwin"] = f"log(3.0 * ({' + '.join(spins)}) * omega / angular_momentum)"

@@ -132,6 +132,7 @@ def _quantities(plan):
             names += [f"zeta_lobe_{c}", f"excess_{c}"]
             names += [f"drive_{c}"] * (plan.overflow == "locked")
         names += [f"ceiling_{c}"] * has_ceiling(plan, c)
+        names += [f"edge_{c}"] * has_band(plan, c)
     return names + torque_slots(plan) + flow_slots(plan)
 
 
@@ -166,6 +167,11 @@ def receives(plan, c):
 def has_ceiling(plan, c):
     """Whether what component c accepts has a ceiling."""
     return bool(plan.components[c].ceiling) and receives(plan, c)
+
+
+def has_band(plan, c):
+    """Whether hydrogen burns steadily on component c between two rates."""
+    return has_ceiling(plan, c) and plan.components[c].ceiling == "band"
 
 
 def _has_excess(plan):

@@ -10,7 +10,7 @@ from law_helpers import close
 from evolve.constants import CM_PER_RSUN, G_PER_MSUN, HOURS_PER_YEAR, KM_S, S_PER_YEAR, G
 from evolve.laws import disc
 from evolve.laws.envelope import survives, webbink_1984
-from evolve.laws.kick import collapsed_mass, sudden_change
+from evolve.laws.kick import collapsed_mass, sudden_change, true_anomaly
 from evolve.orbit.kepler import period
 from evolve.orbit.lobes import lobe_fraction
 
@@ -82,31 +82,55 @@ angles = st.floats(0.0, pi)
 @given(
     st.floats(1.0, 20.0), st.floats(0.05, 1.0), st.floats(0.1, 20.0),
     st.floats(0.0, 300.0), angles, st.floats(0.0, 2.0 * pi),
+    st.floats(0.0, 0.9), st.floats(0.0, 2.0 * pi),
 )  # fmt: skip
-def test_against_orbital_elements_of_the_state_vector(before, kept, other, km_s, polar, azimuth):
-    # velocity along x, companion along y, normal along z; elements from r and v of the new pair
+def test_against_orbital_elements_of_the_state_vector(
+    before, kept, other, km_s, polar, azimuth, old_e, anomaly
+):  # fmt: skip
+    # the star at (0, r, 0) seen from its companion, its way along x, minus the normal along z;
+    # elements from place and velocity of the new pair
     after, a, kick = before * kept, 20.0, km_s / KM_S
-    v = sqrt(G * (before + other) / a)
-    velocity = (
-        v + kick * cos(polar),
-        kick * sin(polar) * cos(azimuth),
-        kick * sin(polar) * sin(azimuth),
-    )
-    place, mu = (0.0, a, 0.0), G * (after + other)
+    mu = G * (before + other)
+    latus = a * (1.0 - old_e * old_e)
+    distance = latus / (1.0 + old_e * cos(anomaly))
+    old = (sqrt(mu * latus) / distance, old_e * sqrt(mu / latus) * sin(anomaly), 0.0)
+    assert sum(x * x for x in old) == close(mu * (2.0 / distance - 1.0 / a), rel=1e-9)  # vis viva
+    kicks = (
+        kick * cos(polar), kick * sin(polar) * cos(azimuth), kick * sin(polar) * sin(azimuth),
+    )  # fmt: skip
+    velocity = tuple(x + y for x, y in zip(old, kicks, strict=True))
+    place, mu = (0.0, distance, 0.0), G * (after + other)
     square = sum(x * x for x in velocity)
-    inverse = 2.0 / a - square / mu
+    inverse = 2.0 / distance - square / mu
     momentum = cross(place, velocity)
     along = cross(velocity, momentum)
-    e = sqrt(sum((x / mu - y / a) ** 2 for x, y in zip(along, place, strict=True)))
-    found = sudden_change(before, after, other, a, kick, polar, azimuth)
+    e = sqrt(sum((x / mu - y / distance) ** 2 for x, y in zip(along, place, strict=True)))
+    found = sudden_change(before, after, other, a, kick, polar, azimuth, old_e, anomaly)
     if abs(inverse) * a > 1e-9:
         assert found.separation == close(1.0 / inverse, rel=1e-9)
         assert found.bound == (inverse > 0.0)
-    assert found.eccentricity == pytest.approx(e, rel=1e-9, abs=1e-9)
+    assert found.eccentricity == pytest.approx(e, rel=1e-9, abs=1e-7)
     # the angle between the new angular momentum and the old, which points along -z here
     assert abs(found.tilt) == pytest.approx(
         abs(atan2(sqrt(momentum[0] ** 2 + momentum[1] ** 2), -momentum[2])), abs=1e-9
     )
+    # momentum of both in the frame in which the old pair was at rest
+    share = before / (before + other)
+    drift = sqrt(sum(
+        ((after * ((1.0 - share) * x + y) - other * share * x) / (after + other)) ** 2
+        for x, y in zip(old, kicks, strict=True)
+    ))  # fmt: skip
+    assert found.speed == pytest.approx(drift, rel=1e-9, abs=1e-6)
+
+
+@given(st.floats(0.0, 2.0 * pi), st.floats(0.0, 0.99))
+def test_true_anomaly_solves_keplers_equation(mean, e):
+    # r from the true anomaly and r from the eccentric one are the same place
+    f = true_anomaly(mean, e)
+    eccentric = atan2(sqrt(1.0 - e * e) * sin(f), e + cos(f)) % (2.0 * pi)
+    back = eccentric - e * sin(eccentric)
+    assert cos(back) == pytest.approx(cos(mean), abs=1e-9)
+    assert sin(back) == pytest.approx(sin(mean), abs=1e-9)
 
 
 def test_collapse_of_a_white_dwarf():
