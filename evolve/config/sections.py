@@ -40,7 +40,7 @@ def complete_sections(reading, raw):
     for name, section in SECTIONS.items():
         table = reading.table(raw, name, name)
         if section.by_component:
-            values[name] = _by_component(reading, section, name, table)
+            values[name] = _by_component(reading, section, name, table, name in raw)
         elif name == "end":
             values[name] = _end(reading, section, table)
         elif name == "orbit":
@@ -50,9 +50,13 @@ def complete_sections(reading, raw):
     return values
 
 
-def _by_component(reading, section, name, table):
-    """[braking] goes for both components, [braking.A] in place of it for one."""
+def _by_component(reading, section, name, table, there):
+    """[braking] goes for both components, [braking.A] in place of it for one.
+
+    `there`: the table stands in the config, be it empty.
+    """
     shared = {key: written for key, written in table.items() if key not in ("A", "B")}
+    whole = bool(shared) or (there and not table)
     values = {}
     for c in "AB":
         own, path = shared, name
@@ -63,7 +67,7 @@ def _by_component(reading, section, name, table):
             values[c] = dict(values["A"])  # checked already; the same problems only once
             _same_own_code(reading, name)
             continue
-        values[c] = _section(reading, section, own, path, f":{c}", missing=bool(own))
+        values[c] = _section(reading, section, own, path, f":{c}", missing=c in table or whole)
     if shared and "A" in table and "B" in table:
         reading.warnings.append(
             f"{reading.name}: [{name}] has no effect: [{name}.A] and [{name}.B] replace it"

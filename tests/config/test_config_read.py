@@ -448,3 +448,23 @@ def test_a_config_is_frozen():
     assert isinstance(config, Config)
     with pytest.raises(AttributeError):
         config.values = {}
+
+
+@pytest.mark.parametrize("written", [{}, {"A": {}}, {"B": {}}, {"A": {}, "B": {}}])
+def test_an_empty_table_of_tides_means_them(written):
+    point = {"mass": 1.0, "star": "compact", "kind": "point-mass"}
+    config = read_config({
+        "A": point, "B": point, "orbit": {"period": "1 d"}, "tides": written,
+    })  # fmt: skip
+    for c in "AB":
+        on = c in written or not written
+        assert config.values["tides"][c]["law"] == ("hut-1981" if on else "off")
+
+
+def test_an_empty_table_of_braking_must_name_its_law():
+    point = {"mass": 1.0, "star": "compact", "kind": "point-mass"}
+    for written, path in (({}, "braking.law"), ({"A": {}}, "braking.A.law")):
+        with pytest.raises(ConfigError, match=f"{path}: missing"):
+            read_config(
+                {"A": point, "B": point, "orbit": {"period": "1 d"}, "braking": written}
+            )
