@@ -15,10 +15,14 @@ _PLACES = {
     "History": "evolve.history",
     "open_history": "evolve.archive",
     "run_many": "evolve.studies.many",
+    "sweep": "evolve.studies.sweep",
+    "origin": "evolve.studies.origin",
+    "open_study": "evolve.studies.study_archive",
     "EvolveError": "evolve.errors",
     "ConfigError": "evolve.errors",
     "DomainError": "evolve.errors",
     "ArchiveError": "evolve.errors",
+    "MachineError": "evolve.errors",
     "MissingExtra": "evolve.errors",
 }
 

@@ -33,6 +33,12 @@ class ArchiveError(EvolveError):
     status = 3
 
 
+class MachineError(EvolveError):
+    """The machine failed, or another that worked for it: worker processes, a cluster."""
+
+    status = 3
+
+
 class MissingExtra(EvolveError):
     """A package of an optional extra is needed and not installed.
 

@@ -8,7 +8,7 @@ import pytest
 PACKAGE = Path(__file__).parents[1] / "evolve"
 ORDER = [
     "constants", "errors", "orbit", "laws", "stars", "config", "system", "history",
-    "integrate", "archive", "studies", "figures", "commands", "__init__", "__main__",
+    "integrate", "archive", "studies", "figures", "page", "commands", "__init__", "__main__",
 ]  # fmt: skip
 BARE = ("orbit/kepler.py", "orbit/lobes.py", "laws/*.py", "stars/*.py", "system/gauges.py")
 HEAVY = {"numpy", "scipy", "h5py", "matplotlib", "numba", "tqdm", "astropy", "xarray", "pandas"}

@@ -2,6 +2,7 @@
 
 from pathlib import Path
 
+from evolve.commands.draw import figure_path
 from evolve.commands.output import Answer, aligned, quantity, table
 from evolve.commands.run import add_settings
 
@@ -19,6 +20,7 @@ def arguments(parser):
     )  # fmt: skip
     parser.add_argument("--points", type=int, default=200, metavar="N", help="on it (200)")
     parser.add_argument("--csv", metavar="FILE", help="write the curves on the abscissa")
+    parser.add_argument("--draw", metavar="FILE", help="figure with the differences: .png, .svg or .pdf")
     parser.add_argument("--replace", action="store_true", help="overwrite an existing file")
 
 
@@ -30,6 +32,8 @@ def run(arguments):
 
     if arguments.csv:
         check_output(arguments.csv, arguments.replace)
+    if arguments.draw:
+        figure_path(arguments.draw, arguments.replace)
     if arguments.points < 2:
         raise ConfigError(f"--points {arguments.points}: allowed is 2 or more")
     histories, names = gathered(arguments)
@@ -41,6 +45,12 @@ def run(arguments):
         with whole_file(arguments.csv) as part:
             part.write_text(curves_text(found), encoding="utf-8")
         lines += ["", f"curves on {arguments.on} written to {arguments.csv}"]
+    if arguments.draw:
+        from evolve.figures.comparison import comparison_figure
+        from evolve.figures.style import save_figure
+
+        save_figure(comparison_figure(found), Path(arguments.draw))
+        lines += ["", f"drawn to {arguments.draw}"]
     return Answer(lines, _result(found))
 
 

@@ -2,7 +2,7 @@
 
 from evolve.commands.output import Answer, aligned, of_column, quantity, scalar
 from evolve.commands.run import add_settings
-from evolve.commands.summary import WORDS
+from evolve.history.ledger import LAW_WORDS
 
 
 def arguments(parser):
@@ -57,7 +57,7 @@ def _words(entry):
     law, _, component = entry.rpartition("_")
     if entry in ("growth", "mass_changes"):
         return {"growth": "growth of the star", "mass_changes": "changes of mass"}[entry]
-    return f"{WORDS.get(law, law)} of {component}" if law else WORDS.get(entry, entry)
+    return f"{LAW_WORDS.get(law, law)} of {component}" if law else LAW_WORDS.get(entry, entry)
 
 
 def _reached(title, answer, config):

@@ -11,7 +11,8 @@ def arguments(parser):
     """The command's own arguments."""
     parser.add_argument("files", nargs="+", metavar="FILE.h5", help="several are overlaid")
     parser.add_argument(
-        "--figure", choices=("history", "rate-period", "ledger", "pair"), default="history",
+        "--figure", choices=("history", "rate-period", "ledger", "pair", "stability", "waves"),
+        default="history",
         help="which (history)",
     )
     parser.add_argument(
@@ -30,9 +31,21 @@ def arguments(parser):
     parser.add_argument("--replace", action="store_true", help="overwrite an existing file")
 
 
+def figure_path(name, replace):
+    """The path of a figure to be written, or what is wrong with it."""
+    from evolve.archive import check_output
+    from evolve.errors import ConfigError
+
+    output = Path(name)
+    if output.suffix not in SUFFIXES:
+        raise ConfigError(f"{output}: allowed are files in {', '.join(SUFFIXES)}")
+    check_output(output, replace)
+    return output
+
+
 def run(arguments):
     """Read, draw, write."""
-    from evolve.archive import check_output, is_archive, open_history
+    from evolve.archive import is_archive, open_history
     from evolve.errors import ConfigError
     from evolve.figures.history import history_figure, rate_period_figure
     from evolve.figures.study import sweep_figure
@@ -42,10 +55,7 @@ def run(arguments):
     first = Path(arguments.files[0])
     study = is_archive(first) and is_study(first)
     kind = "sweep" if study else arguments.figure
-    output = Path(arguments.output or f"{first.stem}_{kind}.png")
-    if output.suffix not in SUFFIXES:
-        raise ConfigError(f"{output}: allowed are files in {', '.join(SUFFIXES)}")
-    check_output(output, arguments.replace)
+    output = figure_path(arguments.output or f"{first.stem}_{kind}.png", arguments.replace)
     if study:
         if len(arguments.files) > 1:
             raise ConfigError("a study is drawn alone; give one archive")
@@ -57,6 +67,10 @@ def run(arguments):
         figure = history_figure(histories, names, arguments.on)
     elif arguments.figure == "rate-period":
         figure = rate_period_figure(histories, names, arguments.gap)
+    elif arguments.figure == "waves":
+        from evolve.figures.waves import waves_figure
+
+        figure = waves_figure(histories, names)
     else:
         figure = _of_one(histories, arguments)
     save_figure(figure, output)
@@ -74,5 +88,9 @@ def _of_one(histories, arguments):
         raise ConfigError(f"--figure {arguments.figure} shows one history; give one archive")
     if arguments.figure == "ledger":
         return ledger_figure(histories[0])
+    if arguments.figure == "stability":
+        from evolve.figures.stability import stability_figure
+
+        return stability_figure(histories[0])
     plain = [text if "=" not in text else epoch_of(histories[0], text) for text in arguments.at]
     return pair_figure(histories[0], plain or ("start", "end"))

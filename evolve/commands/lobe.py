@@ -8,22 +8,23 @@ EXPONENTS = (-1.0 / 3.0, 0.0, 1.0, 2.0, 4.0)
 def arguments(parser):
     """The command's own arguments."""
     parser.add_argument(
-        "--mass-ratio", required=True, metavar="Q", help="donor over accretor, 1e-6..1e6"
-    )
+        "--mass-ratio", required=True, nargs="+", metavar="Q",
+        help="donor over accretor, 1e-6..1e6; two to draw them side by side",
+    )  # fmt: skip
+    parser.add_argument("--draw", metavar="FILE", help="map of the potential: .png, .svg or .pdf")
+    parser.add_argument("--replace", action="store_true", help="overwrite an existing file")
 
 
 def run(arguments):
-    """Compute the lobes."""
-    from evolve.config.units import parse_quantity
+    """Compute the lobes, and draw them where that is asked for."""
     from evolve.errors import ConfigError
     from evolve.orbit.roche import lobe_summary
 
-    try:
-        q = parse_quantity(arguments.mass_ratio, "number")
-    except ConfigError as error:
-        raise ConfigError(f"--mass-ratio {arguments.mass_ratio}: {error}") from None
-    if not 1e-6 <= q <= 1e6:
-        raise ConfigError(f"--mass-ratio {arguments.mass_ratio}: allowed is 1e-6 to 1e6")
+    ratios = [_ratio(text) for text in arguments.mass_ratio]
+    if len(ratios) > (2 if arguments.draw else 1):
+        raise ConfigError("--mass-ratio: allowed is one, or two with --draw")
+    drawn = _drawn(ratios, arguments) if arguments.draw else ""
+    q = ratios[0]
     found = lobe_summary(q)
     rows = [
         [name, f"{lobe.exact:.8f}", f"{lobe.eggleton:.8f}", f"{100 * lobe.eggleton_deviation:+.3f} %",
@@ -44,7 +45,32 @@ def run(arguments):
         [f"{zeta:.4f}", *(_number(values[n]) for values in limits.values())]
         for n, zeta in enumerate(EXPONENTS)
     ])  # fmt: skip
+    lines += ["", f"drawn to {drawn}"] * bool(drawn)
     return Answer(lines, _result(q, found, limits))
+
+
+def _ratio(text):
+    from evolve.config.units import parse_quantity
+    from evolve.errors import ConfigError
+
+    try:
+        q = parse_quantity(text, "number")
+    except ConfigError as error:
+        raise ConfigError(f"--mass-ratio {text}: {error}") from None
+    if not 1e-6 <= q <= 1e6:
+        raise ConfigError(f"--mass-ratio {text}: allowed is 1e-6 to 1e6")
+    return q
+
+
+def _drawn(ratios, arguments):
+    """Draw the potential of the mass ratios; the path written to."""
+    from evolve.commands.draw import figure_path
+    from evolve.figures.lobes import lobe_figure
+    from evolve.figures.style import save_figure
+
+    path = figure_path(arguments.draw, arguments.replace)
+    save_figure(lobe_figure(*ratios), path)
+    return path
 
 
 def _limits():

@@ -20,6 +20,7 @@ COMMANDS = {
     "sweep": "many histories over axes and draws; resumes; one archive",
     "origin": "which starting pairs pass through an observed one",
     "draw": "figures of histories",
+    "report": "one self-contained page: what happened, in words, figures and a moving panel",
     "lobe": "Roche lobes, Lagrange points and stability limits of a mass ratio",
     "laws": "every law and star: keys, units, validity, source",
     "template": "a commented config to start from",

@@ -2,19 +2,8 @@
 
 from evolve.commands.nature import COMPACT, MODELS, natures
 from evolve.commands.output import NO_TIME, aligned, of_column, quantity, scalar, table
-from evolve.history.ledger import MASS_UNIT, MOMENTUM_UNIT
+from evolve.history.ledger import FLOW_WORDS, LAW_WORDS, MASS_UNIT, MOMENTUM_UNIT
 
-WORDS = {
-    "waves": "gravitational waves", "braking": "magnetic braking", "wind": "wind",
-    "expelled": "expelled matter", "consequential": "consequential loss", "tides": "tides",
-    "jump": "sudden changes",
-}  # fmt: skip
-FLOWS = {
-    "overflow": "overflow of", "wind": "wind of", "captured": "captured from the wind of",
-    "accepted": "accepted by", "expelled": "expelled by", "jump": "sudden change of",
-}  # fmt: skip
-SLIGHT = 1e-9
-"""What is less than this part of the whole is rounding to people, and left out."""
 ERG_S_PER_LSUN = 3.828e33
 
 
@@ -173,27 +162,24 @@ def _caught(history, c, lost):
 def _words(entry):
     law, _, component = entry.rpartition("_")
     if law:
-        return f"{WORDS.get(law, law)} of {component}"
-    return WORDS.get(entry, entry)
+        return f"{LAW_WORDS.get(law, law)} of {component}"
+    return LAW_WORDS.get(entry, entry)
 
 
 def ledger_lines(history):
-    """Who took what, and what the books leave open. What is less than 1e-9 of all is left out."""
+    """Who took what, and what the books leave open."""
     ledger = history.ledger
     rows = [
         [_words(entry), f"{ledger.total(entry):.6g}", _percent(ledger.share(entry))]
-        for entry in sorted(ledger.angular_momentum, key=_law_of)
-        if abs(ledger.share(entry)) > SLIGHT
+        for entry in sorted(ledger.worth_telling("angular_momentum"), key=_law_of)
     ]
     lines = aligned([f"angular momentum [{MOMENTUM_UNIT}]", "change", "share"], rows)
     if "total_angular_momentum" in history.columns:
         first, last = (float(history["total_angular_momentum"][n]) for n in (0, -1))
         lines.append(f"orbit and spins together, which braking acts on: {first:.6g} at first, {last:.6g} at the end")
-    whole = ledger.start["mass_A"] + ledger.start["mass_B"]
     flows = [
-        [FLOWS.get(entry[:-2], entry[:-2]) + f" {entry[-1]}", f"{ledger.total(entry, 'mass'):.5g}"]
-        for entry in sorted(ledger.mass, key=_giver_of)
-        if abs(ledger.total(entry, "mass")) > SLIGHT * whole
+        [f"{FLOW_WORDS[entry[:-2]]} {entry[-1]}", f"{ledger.total(entry, 'mass'):.5g}"]
+        for entry in sorted(ledger.worth_telling("mass"), key=_giver_of)
     ]
     if flows:
         lines += ["", *aligned(["mass", "Msun"], flows)]
@@ -208,15 +194,15 @@ def ledger_lines(history):
 
 def _law_of(entry):
     """Order of an entry of angular momentum: by law, A before B."""
-    law = entry if entry in WORDS else entry[:-2]
-    return list(WORDS).index(law) if law in WORDS else 0, entry
+    law = entry if entry in LAW_WORDS else entry[:-2]
+    return list(LAW_WORDS).index(law) if law in LAW_WORDS else 0, entry
 
 
 def _giver_of(entry):
     """Order of an entry of mass: the way of A's matter, that of B's, what changed at once."""
     flow, c = entry[:-2], entry[-1]
     giver = {"A": "B", "B": "A"}[c] if flow in ("accepted", "expelled") else c
-    return flow == "jump", giver, list(FLOWS).index(flow) if flow in FLOWS else 0
+    return flow == "jump", giver, list(FLOW_WORDS).index(flow) if flow in FLOW_WORDS else 0
 
 
 def _percent(share):

@@ -51,7 +51,6 @@ def complete(raw, name, files, allow_code=False, as_set=()):
     if settle_masses(reading, raw, values) and values["A"] and values["B"]:
         judge_pair(reading, raw, values)
     _judge_waves(reading, values)
-    _judge_winds(reading, values)
     values["draw"] = read_draws(reading, reading.table(raw, "draw", "draw"))
     if reading.problems:
         raise ConfigError(reading.problems)
@@ -69,19 +68,6 @@ def _judge_waves(reading, values):
             "orbit.eccentricity above 0: a law with its de/dt",
             values["waves"]["law"],
         )
-
-
-def _judge_winds(reading, values):
-    """Capture needs the wind's speed, which only a star with a radius has of its own."""
-    for c in "AB":
-        wind, star = values["wind"][c], values[c]
-        if wind["law"] == "off" or wind["capture"] != "bondi-hoyle" or not star:
-            continue
-        if star.get("kind") == "point-mass" and not star["radius"] and not wind.get("speed"):
-            reading.problem(
-                f"wind.{c}.speed", "missing; a point mass has no escape speed to take it from; "
-                'allowed: a speed, such as "1000 km/s"'
-            )
 
 
 def _warn_of_idle_braking(reading, raw, values):

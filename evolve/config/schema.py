@@ -4,6 +4,7 @@ The keys of laws and stars are not listed here: they come from the tables of
 `evolve.laws` and `evolve.stars`, so a new law or star is known as soon as it stands there.
 """
 
+from functools import cache
 from math import inf, isnan, pi
 from typing import Any, NamedTuple
 
@@ -359,10 +360,18 @@ def choice_entries(choice, law):
 
 
 def star_keys():
-    """Every key of every star model: name -> names of the models that take it."""
+    """Every key of every star model: name -> names of the models that take it.
+
+    One and the same dict at each call, so not to be changed.
+    """
+    return _owners(tuple(stars.MODELS))
+
+
+@cache  # a study reads a config at each of its points, and this was nine tenths of it
+def _owners(names):
     owners = {}
-    for name, model in stars.MODELS.items():
-        for key in star_entries(model):
+    for name in names:
+        for key in star_entries(stars.MODELS[name]):
             owners.setdefault(key, []).append(name)
     return owners
 

@@ -1,8 +1,13 @@
-"""Abscissas on which a phase of a thousand years and one of ten gigayears both show."""
+"""Axes: of studies, and of time where a thousand years and ten gigayears both show."""
 
 import numpy as np
 
 from evolve.config.units import human
+from evolve.figures.style import plain_log_ticks
+
+
+NO_TIME = 1e-15
+"""Times below this many years are steps to the next float, not times."""
 
 
 def stretched_time(time, curves, weight=1.0):
@@ -52,12 +57,42 @@ def time_ticks(position, time, count=6):
         to the end instead.
     """
     wanted = np.linspace(0.0, 1.0, count)
-    times = np.interp(wanted, position, time)
+    return wanted.tolist(), time_labels(np.interp(wanted, position, time), time[-1])
+
+
+def time_labels(times, end):
+    """Times in words, each told from the one before: by the time left to the end where three
+    digits do not do it."""
     labels = []
     for value in times:
-        label = human(value, "time", 3) if value else "0"
+        label = human(value, "time", 3) if value > NO_TIME else "0"
         if label in labels:
-            left = time[-1] - value
+            left = end - value
             label = f"end \u2212 {human(left, 'time', 2)}" if left > 0.0 else "end"
         labels.append(label)
-    return wanted.tolist(), labels
+    return labels
+
+
+def named(name, unit):
+    """A label: a name with its unit."""
+    return f"{name} [{unit}]" if unit else name
+
+
+def positions(scale):
+    """Positions of a study's axis, ndarray: its numbers, or places for words."""
+    words = scale.values.dtype.kind in "OU"
+    return np.arange(len(scale.values), dtype=float) if words else scale.values.astype(float)
+
+
+def label_scale(axis, scale, which):
+    """Make the x or y axis of a panel that of a study.
+
+    Words become ticks; the axis is logarithmic where the numbers are spaced so.
+    """
+    x = positions(scale)
+    if scale.values.dtype.kind in "OU":
+        getattr(axis, f"set_{which}ticks")(x, [str(word) for word in scale.values])
+    elif len(x) > 2 and (x > 0.0).all() and np.allclose(np.diff(np.log(x)), np.log(x[1] / x[0])):
+        getattr(axis, f"set_{which}scale")("log")
+        plain_log_ticks(getattr(axis, f"{which}axis"))
+    getattr(axis, f"set_{which}label")(named(scale.key, scale.unit))

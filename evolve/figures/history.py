@@ -4,6 +4,7 @@ import numpy as np
 
 from evolve.config.units import human
 from evolve.constants import HOURS_PER_YEAR
+from evolve.errors import ConfigError
 from evolve.figures.axes import stretched_time, time_ticks
 from evolve.figures.style import (
     COMPONENT,
@@ -73,9 +74,14 @@ def _abscissa(history, on, alone):
     rows, time = slice(None), history["time"]
     if not alone:
         return rows, time
+    return rows, places_in_time(history)
+
+
+def places_in_time(history):
+    """Place of every row on the time axis of a history drawn alone, ndarray (n,), 0 to 1."""
     curves = [np.log(history["period"]), history["mass_A"], history["mass_B"],
               history["fill_A"], history["fill_B"], *_log_rates(history)]  # fmt: skip
-    return rows, stretched_time(time, curves)
+    return stretched_time(history["time"], curves)
 
 
 def _rates(history):
@@ -228,9 +234,17 @@ def rate_period_figure(histories, names=None, gap=False):
     Returns
     -------
     matplotlib.figure.Figure
+        Dotted, the rate above which the disc around the accretor is steady.
+
+    Raises
+    ------
+    ConfigError
+        If no matter flows in any of them.
     """
     histories = histories if isinstance(histories, (list, tuple)) else [histories]
     names = names or [history.title or f"history {n}" for n, history in enumerate(histories, 1)]
+    if not any(np.isfinite(_total_overflow(history)).any() for history in histories):
+        raise ConfigError(f"{' and '.join(names)}: no overflow to draw against the period")
     figure = new_figure(4.6, 3.4)
     axis = figure.subplots()
     for number, (history, name) in enumerate(zip(histories, names, strict=True)):
@@ -239,6 +253,7 @@ def rate_period_figure(histories, names=None, gap=False):
             history["period"], rate, label=name, color=SERIES[number % len(SERIES)],
             linestyle=DASHES[number % len(DASHES)],
         )  # fmt: skip
+        _critical_rate(axis, history, SERIES[number % len(SERIES)], first=number == 0)
     axis.set_xscale("log")
     axis.set_yscale("log")
     axis.set_xlabel("period [h]")
@@ -247,10 +262,21 @@ def rate_period_figure(histories, names=None, gap=False):
         axis.axvspan(*OBSERVED_GAP, color="0.88", lw=0, zorder=-5)
         axis.text(np.sqrt(np.prod(OBSERVED_GAP)), 0.02, "observed gap", fontsize=6.5, ha="center",
                   va="bottom", transform=axis.get_xaxis_transform(), color="0.35")  # fmt: skip
-    if len(histories) > 1:
+    if len(axis.lines) > 1:
         axis.legend(loc="best")
     plain_log_ticks(axis.xaxis)
     return figure
+
+
+def _critical_rate(axis, history, colour, first):
+    """The rate above which the accretor's disc is steady, where matter flows."""
+    critical = history.columns.get("disc_critical_rate")
+    if critical is None:
+        return
+    flowing = np.where(np.isfinite(_total_overflow(history)), critical, np.nan)
+    if np.isfinite(flowing).any():
+        label = "steady disc above" if first else None
+        axis.plot(history["period"], flowing, color=colour, lw=0.8, ls=":", alpha=0.8, label=label)
 
 
 def _total_overflow(history):

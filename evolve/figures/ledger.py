@@ -4,11 +4,7 @@ import numpy as np
 
 from evolve.figures.axes import stretched_time, time_ticks
 from evolve.figures.style import SERIES, new_figure, styled
-
-WORDS = {
-    "waves": "gravitational waves", "braking": "magnetic braking", "wind": "winds",
-    "expelled": "expelled matter", "consequential": "consequential", "tides": "tides", "jump": "sudden",
-}  # fmt: skip
+from evolve.history.ledger import LAW_WORDS
 
 
 @styled
@@ -37,7 +33,7 @@ def ledger_figure(history):
         taken = _taken(history, law)
         top = base + np.maximum(taken, 0.0)
         through.fill_between(
-            x, base, top, color=SERIES[(place + 1) % len(SERIES)], alpha=0.8, lw=0, label=WORDS.get(law, law)
+            x, base, top, color=SERIES[(place + 1) % len(SERIES)], alpha=0.8, lw=0, label=LAW_WORDS.get(law, law)
         )
         base = top
     through.set_xlim(0.0, 1.0)

@@ -8,6 +8,8 @@ from evolve.figures.style import COMPONENT, new_figure, styled
 from evolve.orbit.roche import exact_lobe_fraction, lagrange_points, lobe_outlines, star_outline
 
 NICE = (1.0, 2.0, 5.0)
+OUT_OF_SIGHT = 15.0
+"""A pair so many times smaller than another cannot be drawn on its scale."""
 SMALLEST = 0.004
 """Stars smaller than this share of the picture are drawn as a dot of this size."""
 
@@ -27,18 +29,21 @@ def pair_figure(history, epochs=("start", "end")):
     matplotlib.figure.Figure
         One panel an epoch. Lobes are the exact ones of a synchronous circular orbit; a star has
         the shape of the equipotential of its volume. An eccentric pair is shown at periastron.
+        Where a pair shrinks or grows beyond sight, each panel has a scale of its own.
     """
     states = [(name, history.at(name)) if isinstance(name, str) else ("", name) for name in epochs]
-    width = max(_distance(state) for _, state in states) * 2.3
+    distances = [_distance(state) for _, state in states]
+    common = max(distances) < OUT_OF_SIGHT * min(distances)
     figure = new_figure(7.0, 2.1 * len(states))
-    axes = np.atleast_1d(figure.subplots(len(states), 1, sharex=True, sharey=True))
-    for axis, (name, state) in zip(axes, states, strict=True):
+    axes = np.atleast_1d(figure.subplots(len(states), 1))
+    for axis, (name, state), distance in zip(axes, states, distances, strict=True):
+        width = 2.3 * (max(distances) if common else distance)
         _draw(axis, state, width)
         axis.set_title(_caption(name, state), loc="left", fontsize=7.5, pad=3)
-    half = 0.24 * width
-    axes[0].set_xlim(-0.62 * width, 0.62 * width)
-    axes[0].set_ylim(-half, half)
-    _scale_bar(axes[-1], width)
+        axis.set_xlim(-0.62 * width, 0.62 * width)
+        axis.set_ylim(-0.24 * width, 0.24 * width)
+        if not common or axis is axes[-1]:
+            _scale_bar(axis, width)
     return figure
 
 

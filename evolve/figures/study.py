@@ -3,7 +3,8 @@
 import numpy as np
 
 from evolve.errors import ConfigError
-from evolve.figures.style import DASHES, SERIES, new_figure, plain_log_ticks, styled
+from evolve.figures.axes import label_scale, named, positions
+from evolve.figures.style import DASHES, SERIES, new_figure, styled
 
 
 @styled
@@ -32,13 +33,13 @@ def sweep_figure(result, name=None):
         raise ConfigError(f'no result "{name}"; there are {", ".join(result.values)}')
     values, failed = result.values[name], np.isnan(result.values[name])
     scales, keep = [], []
-    for place, scale in enumerate(result.scales):
+    for scale in result.scales:
         shown = len(scale.values) > 1 and (len(scales) < 2 and scale.key != "draw")
         if shown:
             scales.append(scale)
         keep.append(slice(None) if shown else slice(None) if scale.key == "draw" else 0)
     values, failed = values[tuple(keep)], failed[tuple(keep)]
-    label = _label(name, result.units[name])
+    label = named(name, result.units[name])
     drawn = bool(result.scales) and result.scales[-1].key == "draw"
     if not scales:
         return _histogram(values.ravel(), label)
@@ -51,27 +52,6 @@ def sweep_figure(result, name=None):
     return _map(scales, values, failed, label)
 
 
-def _label(name, unit):
-    return f"{name} [{unit}]" if unit else name
-
-
-def _numbers(scale):
-    """Positions of an axis: its numbers, or places for words."""
-    words = scale.values.dtype.kind in "OU"
-    return np.arange(len(scale.values), dtype=float) if words else scale.values.astype(float)
-
-
-def _scaled(axis, scale, which):
-    """Words as ticks; a logarithmic axis where the numbers are spaced so."""
-    x = _numbers(scale)
-    if scale.values.dtype.kind in "OU":
-        getattr(axis, f"set_{which}ticks")(x, [str(word) for word in scale.values])
-    elif len(x) > 2 and (x > 0.0).all() and np.allclose(np.diff(np.log(x)), np.log(x[1] / x[0])):
-        getattr(axis, f"set_{which}scale")("log")
-        plain_log_ticks(getattr(axis, f"{which}axis"))
-    getattr(axis, f"set_{which}label")(_label(scale.key, scale.unit))
-
-
 def _wide(values):
     there = values[np.isfinite(values) & (values > 0.0)]
     return there.size == np.isfinite(values).sum() > 0 and there.max() > 30.0 * there.min()
@@ -80,7 +60,7 @@ def _wide(values):
 def _lines(scale, values, failed, label, spread):
     figure = new_figure(4.6, 3.2)
     axis = figure.subplots()
-    x = _numbers(scale)
+    x = positions(scale)
     if spread is not None:
         axis.fill_between(x, spread[0], spread[2], color="0.85", lw=0, label="68 % of the draws")
         axis.legend(loc="best")
@@ -91,7 +71,7 @@ def _lines(scale, values, failed, label, spread):
         axis.set_title("x  no value", loc="right", fontsize=7, color=SERIES[1], pad=2)
     if _wide(values):
         axis.set_yscale("log")
-    _scaled(axis, scale, "x")
+    label_scale(axis, scale, "x")
     axis.set_ylabel(label)
     return figure
 
@@ -101,20 +81,23 @@ def _map(scales, values, failed, label):
 
     figure = new_figure(4.9, 3.6)
     axis = figure.subplots()
-    x, y = (_numbers(scale) for scale in scales)
+    x, y = (positions(scale) for scale in scales)
     norm = LogNorm() if _wide(values) else None
     mesh = axis.pcolormesh(
         x, y, np.ma.masked_invalid(values.T), cmap="cividis", norm=norm, shading="nearest"
     )
-    figure.colorbar(mesh, ax=axis, label=label)
+    bar = figure.colorbar(mesh, ax=axis, label=label)
     if min(values.shape) > 2 and np.isfinite(values).sum() > 3 and np.nanmax(values) > np.nanmin(values):
-        axis.contour(x, y, np.ma.masked_invalid(values.T), colors="white", linewidths=0.5, norm=norm)
+        lines = axis.contour(
+            x, y, np.ma.masked_invalid(values.T), colors="white", linewidths=0.5, norm=norm
+        )
+        bar.add_lines(lines)
     places = np.nonzero(failed)
     axis.plot(x[places[0]], y[places[1]], "x", color=SERIES[1], ms=4)
     if failed.any():
         axis.set_title("x  no value", loc="right", fontsize=7, color=SERIES[1], pad=2)
-    _scaled(axis, scales[0], "x")
-    _scaled(axis, scales[1], "y")
+    label_scale(axis, scales[0], "x")
+    label_scale(axis, scales[1], "y")
     return figure
 
 

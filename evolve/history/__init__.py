@@ -1,7 +1,21 @@
 """Histories: what happened to a pair, in columns, events, chapters and a ledger."""
 
-from evolve.history.columns import COLUMNS, Column
-from evolve.history.history import Chapter, Event, History, largest_differences
-from evolve.history.ledger import Ledger
+from importlib import import_module
 
-__all__ = ["COLUMNS", "Chapter", "Column", "Event", "History", "Ledger", "largest_differences"]
+from evolve.history.columns import COLUMNS, Column
+
+_PLACES = {
+    "Chapter": "evolve.history.history",
+    "Event": "evolve.history.history",
+    "History": "evolve.history.history",
+    "largest_differences": "evolve.history.history",
+    "Ledger": "evolve.history.ledger",
+}
+
+__all__ = ["COLUMNS", "Column", *_PLACES]
+
+
+def __getattr__(name):
+    if name not in _PLACES:
+        raise AttributeError(f"module {__name__!r} has no attribute {name!r}")
+    return getattr(import_module(_PLACES[name]), name)

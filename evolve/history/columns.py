@@ -2,8 +2,6 @@
 
 from typing import NamedTuple
 
-import numpy as np
-
 
 class Column(NamedTuple):
     """Unit as astropy spells it, a name for people, and the meanings of a flag's values."""
@@ -85,6 +83,8 @@ def attributes_of(name):
     column = COLUMNS[name]
     told = {"units": column.unit, "long_name": column.long_name}
     if column.flags:
+        import numpy as np
+
         told["flag_values"] = np.array(list(column.flags), dtype=np.int8)
         told["flag_meanings"] = " ".join(column.flags.values())
     return told

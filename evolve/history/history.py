@@ -1,5 +1,6 @@
 """A history: columns, events, chapters, ledger, and the look-up of an epoch."""
 
+from functools import cache
 from typing import NamedTuple
 
 import numpy as np
@@ -151,14 +152,15 @@ class History:
         return xarray.Dataset({n: d for n, d in data.items() if n != "time"}, {"time": data["time"]})
 
 
-def present_versions():
-    """Versions of what computes a history here."""
+@cache
+def present_versions(*more):
+    """Versions of what computes a history here, with `more` packages."""
     import platform
     from importlib.metadata import version
 
     return {
         "python": platform.python_version(),
-        **{name: version(name) for name in ("numpy", "scipy")},
+        **{name: version(name) for name in ("numpy", "scipy", *more)},
     }
 
 

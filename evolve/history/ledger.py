@@ -4,6 +4,19 @@ import numpy as np
 
 MOMENTUM_UNIT = "solMass solRad2 / yr"
 MASS_UNIT = "solMass"
+LAW_WORDS = {
+    "waves": "gravitational waves", "braking": "magnetic braking", "wind": "wind",
+    "expelled": "expelled matter", "consequential": "consequential loss", "tides": "tides",
+    "jump": "sudden changes",
+}  # fmt: skip
+"""What the laws of the books are called."""
+FLOW_WORDS = {
+    "overflow": "overflow of", "wind": "wind of", "captured": "captured from",
+    "accepted": "accepted by", "expelled": "expelled by", "jump": "sudden change of",
+}  # fmt: skip
+"""What the flows of the books are called, before their component."""
+TRIFLE = 1e-9
+"""Entries below this share of the largest are not worth a line."""
 
 
 class Ledger:
@@ -51,6 +64,12 @@ class Ledger:
                 return float(sum(np.sum(books[name]) for name in parts))
         known = dict.fromkeys(name for kind in kinds for name in getattr(self, kind))
         raise KeyError(f'the ledger has no "{entry}"; it has {", ".join(known)}')
+
+    def worth_telling(self, kind):
+        """Entries of the books of a kind, "angular_momentum" or "mass", that are no trifles."""
+        totals = {name: self.total(name, kind) for name in getattr(self, kind)}
+        largest = max((abs(total) for total in totals.values()), default=0.0)
+        return [name for name, total in totals.items() if abs(total) > TRIFLE * largest]
 
     def share(self, entry):
         """Part of the orbit's whole angular-momentum change that an entry took."""

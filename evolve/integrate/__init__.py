@@ -1,7 +1,7 @@
 """Integration of a pair's equations, chapter by chapter, with solve_ivp."""
 
 
-def integrate(config, progress=None):
+def integrate(config, progress=None, many=False):
     """The history of one config.
 
     Parameters
@@ -9,6 +9,9 @@ def integrate(config, progress=None):
     config : evolve.config.Config
     progress : callable, optional
         Called as progress(time, end_time, regime, steps) after every accepted step.
+    many : bool
+        Whether it is one of so many that a compilation pays: then the engine `auto` is the
+        compiled one, where numba is there.
 
     Returns
     -------
@@ -20,14 +23,19 @@ def integrate(config, progress=None):
     ------
     ConfigError
         If the pair cannot start as written.
+    MissingExtra
+        If the config asks for the compiled engine and numba is not there.
     """
-    from evolve.errors import ConfigError
+    from importlib.util import find_spec
+
+    from evolve.errors import MissingExtra
     from evolve.integrate.assemble import history_of
     from evolve.integrate.run import Run
     from evolve.system.pair import Pair
 
-    if config.values["numerics"]["engine"] == "compiled":
-        raise ConfigError(
-            f'{config.name}: numerics.engine = "compiled": is not there yet; allowed: auto, plain'
-        )
-    return history_of(Run(Pair(config), progress).run())
+    engine = config.values["numerics"]["engine"]
+    wanted = engine == "compiled" or engine == "auto" and many
+    there = wanted and find_spec("numba") is not None
+    if engine == "compiled" and not there:
+        raise MissingExtra("numba", "fast")
+    return history_of(Run(Pair(config), progress, compiled=there).run())

@@ -4,6 +4,7 @@ import numpy as np
 
 from evolve.constants import KM_S
 from evolve.history import COLUMNS, Chapter, Event, History, Ledger
+from evolve.history.history import present_versions
 from evolve.integrate.derive import FLOW_COLUMNS, columns_of
 from evolve.integrate.outcomes import GOOD
 from evolve.laws.changes import CHANGES, sources_of_events
@@ -37,8 +38,9 @@ def history_of(run):
         config_files=config.files,
         statistics=_statistics(run),
         sources=_sources(run, columns),
-        warnings=list(config.warnings),
+        warnings=[*config.warnings, *run.warnings],
         references=references_of(run.acts),
+        versions=present_versions(*["numba"] * run.compiled),
     )
 
 
@@ -52,14 +54,14 @@ def _sources(run, columns):
 
 def _columns(run):
     """The columns of all acts, one after the other; what an act lacks is 0 or NaN."""
-    rows = run.recorder.rows
-    time, donor = np.array([row.time for row in rows]), _donor(run, len(rows))
-    bounds = [act.row for act in run.acts] + [len(rows)]
+    time = run.recorder.times()
+    donor = _donor(run, len(time))
+    bounds = [act.row for act in run.acts] + [len(time)]
     parts = []
     for act, first, last in zip(run.acts, bounds, bounds[1:], strict=False):
         if first == last:
             continue
-        table = np.array([row.quantities for row in rows[first:last]], dtype=float)
+        table = run.recorder.quantities(first, last)
         q = dict(zip(act.pair.layout.quantities, table.T, strict=True))
         parts.append(columns_of(act.pair, time[first:last], q, donor[first:last]))
     for part, speed in zip(parts, _systemic_speeds(run, bounds), strict=True):
@@ -98,7 +100,7 @@ def _donor(run, length):
 
 
 def _events(run):
-    rows, marks = run.recorder.rows, sorted(run.marks, key=lambda mark: mark.row)
+    rows, marks = run.recorder, sorted(run.marks, key=lambda mark: mark.row)
     events = [
         Event(m.name, m.component, rows[m.row].time, m.row, m.residual) for m in marks
     ]
@@ -106,7 +108,7 @@ def _events(run):
 
 
 def _chapters(run):
-    rows, openings = run.recorder.rows, run.openings
+    rows, openings = run.recorder, run.openings
     chapters = []
     for number, opening in enumerate(openings):
         following = openings[number + 1] if number + 1 < len(openings) else None
@@ -122,7 +124,7 @@ def _chapters(run):
 
 def _ledger(run):
     """Differences of the ledger's integrals over each chapter, and jumps between chapters."""
-    rows, chapters = run.recorder.rows, _chapters(run)
+    rows, chapters = run.recorder, _chapters(run)
     momentum, mass = {}, {}
 
     def book(entries, name, number, value):
@@ -154,15 +156,15 @@ def _pair_of(run, row):
 
 def _balance_at(run, row):
     """Masses and angular momentum in a row."""
-    core = zip(_pair_of(run, row).layout.core, run.recorder.rows[row].state, strict=False)
+    core = zip(_pair_of(run, row).layout.core, run.recorder[row].state, strict=False)
     return {k: v for k, v in core if k in ("mass_A", "mass_B", "angular_momentum")}
 
 
 def _statistics(run):
     numerics = run.numerics
     return {
-        "engine": "plain",
-        "method": numerics["method"],
+        "engine": "compiled" if run.compiled else "plain",
+        "method": "Rodas4" if run.compiled else numerics["method"],
         "rtol": numerics["rtol"],
         "steps": run.steps,
         "evaluations": run.evaluations,

@@ -26,6 +26,21 @@ def sharpness(plan):
     return 0.05 if plan.overflow == "polytrope" else 1.0
 
 
+def smallest_sizes(pair, state):
+    """Size of each core slot below which a step of differences does not follow it.
+
+    A logarithm and an eccentricity count from 1; a clock that starts at 0 from a thousandth of
+    where it ends.
+    """
+    sizes = []
+    for name, value in zip(pair.layout.core, state, strict=False):
+        if name.startswith("phase"):
+            sizes.append(1e-3 * getattr(pair.star_keys[name[-1]], "phase_high", 1.0))
+        else:
+            sizes.append(1e-9 * abs(value) + name.startswith(("ln_", "ecc")))
+    return sizes
+
+
 class Course:
     """A stretch on its way.
 
@@ -63,11 +78,7 @@ class Course:
 
         stretch, method = self.stretch, self.numerics["method"]
         core = self.run.pair.layout.core
-        floor = [
-            1e-9 * abs(x) + name.startswith(("ln_", "ecc"))
-            for name, x in zip(core, stretch.state, strict=False)
-        ]
-        equations = CoreEquations(stretch.right_side, floor)
+        equations = CoreEquations(stretch.right_side, smallest_sizes(self.run.pair, stretch.state))
         rtol = max(self.numerics["rtol"] * sharpness(self.run.pair.plan), FINEST)
         atol = stretch.atol(rtol)
         if self.numerics["atol"] is not None:

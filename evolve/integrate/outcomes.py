@@ -13,7 +13,7 @@ SENTENCES = {
     "unbound": "The pair is no longer bound.",
     "table_end": "A star reached the end of its track.",
     "validity": "A star reached the end of what its model describes.",
-    "step_limit": "The limit of evaluations was reached; raise numerics.max_evaluations.",
+    "step_limit": "The limit of evaluations was reached (raise numerics.max_evaluations).",
     "non_finite": "The state stopped being finite.",
     "domain": "The state left the domain of the equations.",
     "failed": "The integration failed.",
@@ -29,8 +29,8 @@ GOOD = (
 
 def sentence(outcome, detail=""):
     """What an end means, for people, with the detail that is known."""
-    said = SENTENCES[outcome]
-    return f"{said.rstrip('.')} ({detail})." if detail else said
+    words = SENTENCES[outcome]
+    return f"{words[:-1]}: {detail}." if detail else words
 
 
 def exit_status(outcome):

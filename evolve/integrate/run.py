@@ -1,28 +1,17 @@
 """Chapter after chapter from the start of a history to its end."""
 
-from math import log
 from typing import NamedTuple
-
-from dataclasses import replace
 
 import numpy as np
 
-from evolve.integrate.changes import collapse, common_envelope, remnant, sudden_loss
+from evolve.errors import ConfigError
 from evolve.integrate.course import Course
 from evolve.integrate.outcomes import sentence
 from evolve.integrate.recorder import Recorder
 from evolve.integrate.stretch import InspiralStretch, TimeStretch
+from evolve.integrate.turns import Act, Turns
 from evolve.integrate.watches import CONTACT_MARGIN, WAKE, noted, watches_for
-from evolve.system.gauges import RUNAWAY_FILL
-from evolve.system.layout import OTHER
-from evolve.system.pair import OVERFILL, Pair
 
-DETAILS = {
-    "burning_ends": "the main sequence of {} is over",
-    "validity": "the mass or the core mass of {} leaves its range",
-    "table_end": "the last row of the table of {}",
-}
-"""What more there is to say of an end than its name does."""
 CHATTER = 25
 """So many events in a row without time passing between them are a fault, not a history."""
 
@@ -44,18 +33,7 @@ class Opening(NamedTuple):
     event: str
 
 
-class Act(NamedTuple):
-    """From this row on the pair is this one: a star has become something else.
-
-    `speed` is what a sudden loss or a kick then gave the pair's centre of mass [solRad/yr].
-    """
-
-    row: int
-    pair: object
-    speed: float = 0.0
-
-
-class Run:
+class Run(Turns):
     """The state of one history on its way.
 
     Parameters
@@ -63,9 +41,11 @@ class Run:
     pair : evolve.system.pair.Pair
     progress : callable or None
         Called as progress(time, end_time, regime, steps) after every accepted step.
+    compiled : bool
+        Whether stretches go to the compiled engine, where it can take them.
     """
 
-    def __init__(self, pair, progress=None):
+    def __init__(self, pair, progress=None, compiled=False):
         values = pair.config.values
         self.pair, self.progress = pair, progress
         self.numerics, self.end = values["numerics"], values["end"]
@@ -82,6 +62,8 @@ class Run:
         self.idle = 0
         self.opening_event = ""
         self.ignored, self.kicked = set(), set()
+        self._asked, self._quantities = (None,) * 4, None
+        self.compiled, self.engine, self.warnings = compiled, None, []
 
     # What watches and chapters ask -----------------------------------------------------
 
@@ -101,8 +83,12 @@ class Run:
         return next((f"overflow_{c}" for c in "AB" if self.in_contact[c]), "detached")
 
     def now(self):
-        """The quantities at the present state."""
-        return self.pair.quantities(self.time, self.state.tolist(), self.switches)
+        """The quantities at the present state, computed once."""
+        asked = (self.pair, self.time, self.state, self.switches)
+        if any(one is not other for one, other in zip(asked, self._asked, strict=True)):
+            self._asked = asked
+            self._quantities = self.pair.quantities(self.time, self.state.tolist(), self.switches)
+        return self._quantities
 
     def _inspirals(self):
         """True if only waves act and no star can fill its lobe: then -ln a leads."""
@@ -116,9 +102,15 @@ class Run:
     # The loop ---------------------------------------------------------------------------
 
     def run(self):
-        """Integrate to the end. Sets `outcome` and `message`; rows, marks and openings stay."""
+        """Integrate to the end. Sets `outcome` and `message`; rows, marks and openings stay.
+
+        Raises
+        ------
+        ConfigError
+            If the equations fail at the start.
+        """
         self.acts = [Act(0, self.pair)]
-        self._open("start")
+        self._begin()
         self._mark("start")
         self._wake()
         while not self.outcome:
@@ -135,17 +127,44 @@ class Run:
                 self._finish("failed", f"{type(error).__name__}: {error}")
         return self
 
+    def _begin(self):
+        """The first row; where the equations fail already there is nothing to keep."""
+        try:
+            self._open("start")
+        except Exception as error:  # a law, the user's own perhaps
+            raise ConfigError(
+                f"{self.pair.config.name}: the equations fail at the start: "
+                f"{type(error).__name__}: {error}"
+            ) from error
+
     def _stretch(self):
         kind = InspiralStretch if self.inspiral else TimeStretch
         stretch = kind(self.pair, self.switches, self.time, self.state)
         bound = stretch.bound(self.end["time"])
         if bound <= stretch.start:
             return self._finish("time")
-        self.course = Course(self, stretch, watches_for(self))
+        self.course = self._course(stretch)
         self.stretches += 1
         message = self.course.follow(bound)
         self._close(message)
         return None
+
+    def _course(self, stretch):
+        if self.compiled:
+            from evolve.integrate.compiled_course import CompiledCourse
+            from evolve.integrate.engine import CannotCompile, engine_of
+
+            try:
+                self.engine = self.engine or engine_of(self.pair, self.inspiral, self._compiling)
+                return CompiledCourse(self, stretch, self.watches, self.engine)
+            except CannotCompile as error:
+                self.compiled = False
+                self.warnings.append(f"the equations run plain, for they do not compile: {error}")
+        return Course(self, stretch, self.watches)
+
+    def _compiling(self):
+        if self.progress:
+            self.progress(self.time, self.end["time"], "compiling the equations", 0)
 
     def _close(self, message):
         """Take over what a course brought: noted events, its last state, why it stopped."""
@@ -154,7 +173,7 @@ class Run:
             self._mark(watch.name, watch.component, row, residual)
         if course.fired:
             watch, row, residual = course.fired
-            last = self.recorder.rows[row]
+            last = self.recorder[row]
             self.time, self.state = last.time, last.state
             self.idle = self.idle + 1 if row == course.first_row else 0
             self._act(watch, row, residual)
@@ -163,7 +182,7 @@ class Run:
         elif message:
             self._finish("failed", message)
         else:
-            self.time, self.state = self.recorder.rows[-1].time, self.recorder.rows[-1].state
+            self.time, self.state = self.recorder[-1].time, self.recorder[-1].state
             self._finish("merger" if self.inspiral else "time")
 
     def _settle_at_once(self):
@@ -172,10 +191,11 @@ class Run:
             if self.idle > CHATTER:
                 return self._finish("failed", "events follow each other without time passing")
             readings = self.pair.gauges(self.now())
+            self.watches = watches_for(self)
             past = next(
                 (
                     watch
-                    for watch in watches_for(self)
+                    for watch in self.watches
                     if watch.terminal and watch.at_once
                     and watch.direction * (readings[watch.gauge] - watch.level) > 0.0
                 ),
@@ -186,153 +206,6 @@ class Run:
             self.idle += 1
             self._act(past, len(self.recorder) - 1, 0.0)
         return None
-
-    def _act(self, watch, row, residual):
-        """What a terminal event does to the history."""
-        c = watch.component
-        if watch.name in ("wake", "sleep"):
-            self._switch(f"flow_{c}", watch.name == "wake")
-            return
-        if watch.name == "envelope_changes":
-            return  # the equations jump here: a fresh start, and nothing else
-        if watch.name == "runaway":
-            if not self._already("unstable_overflow", c):
-                self._mark("unstable_overflow", c, row)
-            return self._unstable(c)
-        if watch.name != "end":
-            self._mark(watch.name, c, row, residual)
-        if watch.end == "unstable_overflow":
-            return self._unstable(c)
-        if watch.end:
-            return self._finish(watch.end, DETAILS.get(watch.name, "").format(c))
-        if act := getattr(self, f"_on_{watch.name}", None):
-            act(c)
-            self.opening_event = self.opening_event or watch.name
-        return None
-
-    def _on_contact(self, c):
-        if self.in_contact[OTHER[c]]:
-            self._mark("both_lobes_filled", "", len(self.recorder) - 1)
-            return self._finish("both_lobes_filled")
-        quantities = self.now()
-        if quantities.eccentricity > 0.0:
-            return self._circularise()
-        self.in_contact[c] = True
-        self._switch(f"flow_{c}", True)
-        quantities = self.now()
-        if self.law == "locked" and self._overfilled(c, quantities):
-            self._mark("unstable_overflow", c, len(self.recorder) - 1)
-            return self._unstable(c)
-        if self.law == "locked":
-            self._set(f"ln_radius_{c}", log(getattr(quantities, f"lobe_{c}")))
-        elif getattr(quantities, f"zeta_{c}") <= getattr(quantities, f"zeta_lobe_{c}"):
-            self._mark("unstable_overflow", c, len(self.recorder) - 1)
-        return None
-
-    def _overfilled(self, c, quantities):
-        """True if a sudden change has left a star too large for R = R_L to be imposed on it."""
-        most = RUNAWAY_FILL if self.pair.models[c].relaxing else 1.0 + OVERFILL
-        ratio = getattr(quantities, f"radius_{c}") / getattr(quantities, f"lobe_{c}")
-        return ratio > most
-
-    def _circularise(self):
-        """Contact at periastron rounds the orbit at constant J; its lobes then have grown.
-
-        The star is detached again, and a second contact may follow.
-        """
-        self._mark("circularised", "", len(self.recorder) - 1)
-        self._set("eccentricity_state", 0.0)
-        quantities = self.now()
-        for c in "AB":
-            if self.law == "atmosphere" and self.pair.models[c].overflows:
-                self._switch(f"flow_{c}", getattr(quantities, f"excess_{c}") > WAKE)
-
-    def _on_circularised(self, c):
-        self._set("eccentricity_state", 0.0)
-
-    def _on_detachment(self, c):
-        self.in_contact[c] = False
-        if self.law in ("polytrope", "locked"):
-            self._switch(f"flow_{c}", False)
-
-    def _on_braking_stops(self, c):
-        self._set(f"mass_{c}", self.pair.stops_below[c])
-        self._switch(f"braking_{c}", False)
-
-    def _on_braking_resumes(self, c):
-        self._switch(f"braking_{c}", True)
-
-    # A star becomes something else ------------------------------------------------------------
-
-    def _on_envelope_exhausted(self, c):
-        self._mark("remnant_formed", c, len(self.recorder) - 1)
-        self._become(c, remnant(self.pair.config.values[c], c, self.now()))
-
-    def _on_collapse(self, c):
-        values = self.pair.config.values
-        kick = {**values["kick"][c], "speed": 0.0} if values["kick"][c]["time"] else values["kick"][c]
-        self._sudden(c, collapse(values[c], c, self.now(), kick))
-
-    def _on_kick(self, c):
-        self.kicked.add(c)
-        values, quantities = self.pair.config.values, self.now()
-        if values["kick"][c]["mass_lost"] >= getattr(quantities, f"mass_{c}"):
-            return self._finish("failed", f"{c} has no such mass to lose")
-        after = sudden_loss(values[c], c, quantities, values["kick"][c])
-        return self._sudden(c, after, (c,))
-
-    def _sudden(self, c, after, kept=()):
-        if not after.bound:
-            self._mark("unbound", "", len(self.recorder) - 1)
-            return self._finish("unbound", after.parting(getattr(self.now(), f"mass_{OTHER[c]}")))
-        return self._become(c, after, kept)
-
-    def _unstable(self, c):
-        """Unstable overflow: the history stops, goes on, or goes through a common envelope."""
-        envelope = self.pair.config.values["envelope"]
-        if envelope["follows"] == "stop" or (
-            envelope["follows"] == "continue" and self.law == "locked"
-        ):  # R = R_L cannot be imposed on an unstable donor
-            return self._finish("unstable_overflow")
-        if envelope["follows"] == "continue":
-            self.ignored.add(c)
-            return None
-        self._mark("common_envelope", c, len(self.recorder) - 1)
-        quantities = self.now()
-        after = common_envelope(
-            self.pair.config.values[c], c, quantities, envelope["efficiency"],
-            envelope["binding"], getattr(quantities, f"radius_{OTHER[c]}"),
-        )  # fmt: skip
-        if after is None:
-            self._mark("merger", "", len(self.recorder) - 1)
-            return self._finish("merger")
-        self._mark("remnant_formed", c, len(self.recorder) - 1)
-        self._become(c, after)
-        self.opening_event = self.opening_event or "common_envelope"
-        return None
-
-    def _become(self, c, after, kept=()):
-        """Go on with the pair in which component c is what it has become.
-
-        `kept` names c where it is the same star still, with its radius and its clock.
-        """
-        other, old = OTHER[c], dict(zip(self.pair.layout.core, self.state, strict=False))
-        values = dict(self.pair.config.values)
-        values[c] = after.values
-        values[other] = {**values[other], "mass": old[f"mass_{other}"]}
-        values["orbit"] = {
-            "separation": after.separation, "eccentricity": after.eccentricity,
-            "period": None, "fill": None,
-        }  # fmt: skip
-        config = replace(self.pair.config, values=values)
-        self.pair = Pair(config, {s: self.pair.star_keys[s] for s in (other, *kept)}, old)
-        self.acts.append(Act(len(self.recorder), self.pair, after.speed))
-        self.switches = self.pair.first_switches()
-        self.in_contact = {"A": False, "B": False}
-        self.inspiral = self._inspirals()
-        self.state = np.array(self.pair.start + [0.0] * len(self.pair.layout.ledger))
-        self.ignored = set()
-        self._wake()
 
     # Small things -------------------------------------------------------------------------
 
@@ -374,20 +247,20 @@ class Run:
         self.opening_event = ""
         quantities = self.now()
         row = self.recorder.add(self.time, self.state, quantities)
-        self.time = self.recorder.rows[row].time
+        self.time = self.recorder[row].time
         if self.openings and self.acts[-1].row < row:
             self._note_jumps(row, quantities)
         self.openings.append(Opening(row, self.regime, event))
 
     def _note_jumps(self, row, quantities):
         """Events that change nothing, met where the equations jump from one row to the next."""
-        earlier = self.recorder.rows[row - 1].quantities
-        before, after = self.pair.gauges(earlier), self.pair.gauges(quantities)
+        before = self.pair.gauges(self.recorder[row - 1].quantities)
+        after = self.pair.gauges(quantities)
+        period, rate = (self.pair.layout.gauges.index(n) for n in ("log_period", "period_rate"))
         # no extreme of the period: a flow joins at the very start, or the period itself jumps
-        jumps = abs(quantities.omega / earlier.omega - 1.0) > 1e-9
-        no_extreme = jumps or self.openings[-1].row == row - 1
+        no_extreme = self.openings[-1].row == row - 1 or abs(after[period] - before[period]) > 1e-9
         for watch in noted(self):
-            if no_extreme and watch.gauge == self.pair.layout.gauges.index("period_rate"):
+            if no_extreme and watch.gauge == rate:
                 continue
             old, new = before[watch.gauge] - watch.level, after[watch.gauge] - watch.level
             if old * new < 0.0 and watch.direction * (new - old) >= 0.0:

@@ -45,6 +45,13 @@ class TimeStretch:
         return state
 
 
+def shrinking_rate(mass_a, mass_b, momentum, u, mass_rate_a, mass_rate_b, torque, u_rate):
+    """d ln a/dt [1/yr] of masses [solMass], J [solMass solRad2/yr], u = e/sqrt(1-e2)."""
+    rate = 2.0 * torque / momentum - 2.0 * (mass_rate_a / mass_a + mass_rate_b / mass_b)
+    rate += (mass_rate_a + mass_rate_b) / (mass_a + mass_b)
+    return rate + 2.0 * u * u_rate / (1.0 + u * u)
+
+
 class InspiralStretch:
     """Integration in -ln a, with time [yr] as one more slot at the end of the state."""
 
@@ -61,12 +68,8 @@ class InspiralStretch:
 
     def right_side(self, x, state):
         rates = self._rates(self.origin + state[-1], state)
-        mass_a, mass_b, momentum = state[:3].tolist()
-        rate = 2.0 * rates[2] / momentum - 2.0 * (rates[0] / mass_a + rates[1] / mass_b)
-        rate += (rates[0] + rates[1]) / (mass_a + mass_b)
-        if self._eccentric:
-            u = state[3]
-            rate += 2.0 * u * rates[3] / (1.0 + u * u)
+        u, u_rate = (state[3], rates[3]) if self._eccentric else (0.0, 0.0)
+        rate = shrinking_rate(*state[:3].tolist(), u, *rates[:3], u_rate)
         return [-r / rate for r in rates] + [-1.0 / rate]
 
     def time(self, x, state):

@@ -25,6 +25,9 @@ THERMAL = (
 )
 """Overflow counts as thermal while the donor is so much smaller than its equilibrium radius:
 its relaxation, not its evolution, then drives the transfer."""
+STABLE_MARGIN = 1e-5
+"""zeta_star - zeta_lobe at which a locked overflow counts as unstable: its rate grows as the
+inverse of it, and no step reaches 0."""
 CEILING_MARGIN = 1e-3
 """A ceiling counts as reached this far below it, and as left three times as far."""
 ROUND = 1e-4
@@ -104,7 +107,7 @@ def _lobe_watches(run, c, watch):
         end = "unstable_overflow"
         return [
             watch("detachment", c, f"drive_{c}", 0.0, -1),
-            watch("unstable_overflow", c, f"stability_{c}", 0.0, -1, end=end),
+            watch("unstable_overflow", c, f"stability_{c}", STABLE_MARGIN, -1, end=end),
             watch("runaway", c, f"runaway_{c}", 0.0, +1, end=end),
         ]
     gone = watch("detachment", c, f"rate_{c}", threshold - CONTACT_MARGIN, -1)

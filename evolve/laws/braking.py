@@ -6,7 +6,7 @@ motion and the torque is passed on to the orbit.
 
 from math import log10, sqrt
 
-from evolve.constants import CM_PER_RSUN, G_PER_MSUN, S_PER_YEAR, T_SUN, TORQUE_CGS
+from evolve.constants import CM_PER_RSUN, S_PER_YEAR, T_SUN, TORQUE_CGS
 from evolve.laws.contract import Annotated, Key, Law, NamedTuple
 
 # the factor that turns (g) (cm)^4 (s)^-3, written in internal units, into a torque

@@ -27,6 +27,7 @@ tides          torque on the spin of `star` [solMass solRad2 / yr2]; and de/dt [
 A new law is one such function, its Keys, and one line in its process's table.
 """
 
+from functools import cache
 from typing import Annotated, Any, Callable, NamedTuple, get_args, get_type_hints
 
 
@@ -104,6 +105,7 @@ class Law(NamedTuple):
     second: Callable | None = None
 
 
+@cache
 def described_keys(keys: type) -> dict[str, tuple[Key, Any]]:
     """The keys of a Keys class: name -> (Key, default), default `...` where it must be given.
 
@@ -116,7 +118,7 @@ def described_keys(keys: type) -> dict[str, tuple[Key, Any]]:
     Returns
     -------
     dict
-        In the order of the fields.
+        In the order of the fields; one and the same at each call, so not to be changed.
     """
     described = {}
     for name, hint in get_type_hints(keys, include_extras=True).items():

@@ -154,11 +154,16 @@ def star_outline(mass_ratio, radius, points=200):
     DomainError
         If the radius or the mass ratio is outside its range.
     """
+    return outline_at_front(mass_ratio, front_of_star(mass_ratio, radius), points)
+
+
+def outline_at_front(mass_ratio, front, points=200):
+    """Outline of a star whose surface crosses the axis at `front` [a], ndarray (2 points - 1, 2)
+    [a]; see `star_outline`."""
     own, other = shares(mass_ratio)
-    front = front_of_star(mass_ratio, radius)
     level = float(depth(own, other, front, 0.0, 0.0))
     back = _crossing(own, other, level, 0.0, axis_points(mass_ratio)[0])
     return _outline(own, other, level, back, front, points)
 
 
-__all__ = ["level_outline", "lobe_outlines", "star_outline"]
+__all__ = ["level_outline", "lobe_outlines", "outline_at_front", "star_outline"]

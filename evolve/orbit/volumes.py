@@ -150,7 +150,9 @@ def surface(mass_ratio, front):
     return Surface(radius, above(radius)[1], weight)
 
 
-def _volume_radius(mass_ratio, front):
+def radius_at_front(mass_ratio, front):
+    """Volume-equivalent radius [a] of a star whose surface crosses the axis at `front` [a]: the
+    inverse of `front_of_star`, without its search. Raises DomainError as `surface` does."""
     shape = surface(mass_ratio, front)
     return float((np.sum(shape.weight * shape.radius**3) / (4.0 * np.pi)) ** (1.0 / 3.0))
 
@@ -174,7 +176,7 @@ def exact_lobe_fraction(mass_ratio):
     DomainError
         If the mass ratio is outside the range.
     """
-    return _volume_radius(mass_ratio, inner_distance(mass_ratio))
+    return radius_at_front(mass_ratio, inner_distance(mass_ratio))
 
 
 def front_of_star(mass_ratio, radius):
@@ -207,7 +209,7 @@ def front_of_star(mass_ratio, radius):
         return tip
     # the front is the farthest point of the surface, so never nearer than the mean radius
     return brentq(
-        lambda front: _volume_radius(mass_ratio, front) - radius,
+        lambda front: radius_at_front(mass_ratio, front) - radius,
         radius * (1.0 - 1e-9),
         tip,
         xtol=1e-300,

@@ -1,5 +1,6 @@
 """Low-mass main-sequence stars, and the brown dwarfs they become as donors."""
 
+from functools import lru_cache
 from math import exp, log, sqrt
 from typing import Annotated, NamedTuple
 
@@ -120,22 +121,28 @@ def prepare(mass, values):
     DomainError
         A table that makes no sense, or that ends before the star's mass.
     """
-    table = values.get("table") or builtin("dwarf")
-    table = checked(table, "mass", positive=("mass", "radius", "luminosity"))
-    low, high = table["mass"][0], table["mass"][-1]
+    inflation = given(values, "inflation", 0.0)
+    if values.get("table"):
+        knots, curves, low, high = _curves(values["table"], inflation)
+    else:
+        knots, curves, low, high = _builtin_curves(inflation)
     if not low <= mass <= high:
         raise DomainError(f"the mass {mass:g} is outside the table of masses, {low:g} to {high:g}")
-    inflation = given(values, "inflation", 0.0)
+    return DwarfKeys(inflation, given(values, "zeta_ad", -1.0 / 3.0), knots, curves, low, high)
+
+
+def _curves(table, inflation):
+    """Knots and cubics of a table, and the masses at its ends."""
+    table = checked(table, "mass", positive=("mass", "radius", "luminosity"))
     knots = tuple(log(m) for m in table["mass"])
     radii = [log(radius * (1.0 + inflation)) for radius in table["radius"]]
-    return DwarfKeys(
-        inflation,
-        given(values, "zeta_ad", -1.0 / 3.0),
-        knots,
-        cubics(knots, radii, [log(value) for value in table["luminosity"]]),
-        low,
-        high,
-    )
+    curves = cubics(knots, radii, [log(value) for value in table["luminosity"]])
+    return knots, curves, table["mass"][0], table["mass"][-1]
+
+
+@lru_cache(maxsize=64)
+def _builtin_curves(inflation):
+    return _curves(builtin("dwarf"), inflation)
 
 
 MODEL = StarModel(

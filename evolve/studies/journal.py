@@ -17,7 +17,15 @@ from evolve.errors import ConfigError
 MESSAGE = 240
 """Bytes kept of a failed point's reason."""
 SYNC = 1.0
-"""Seconds between two syncs to the disk: as much as a kill may lose."""
+"""Seconds between two syncs to the disk: as much as a power cut may lose. A kill loses nothing
+that was added."""
+PATIENCE = 3.0
+"""Seconds to wait for the lock: workers of a killed process take a moment to end."""
+
+
+def clipped(message):
+    """As much of a message as a record holds: what goes on must not differ from what was told."""
+    return message.encode()[:MESSAGE].decode("utf-8", "ignore")
 
 
 class Journal:
@@ -27,9 +35,11 @@ class Journal:
     ----------
     path : str or Path
     digest : str
-        Of the study.
+        Of the study, and of all that its bits rest on.
     n_values : int
         Numbers a record holds.
+    replace : bool
+        Whether a journal of another study may be replaced. One of this study goes on anyway.
 
     Raises
     ------
@@ -37,20 +47,27 @@ class Journal:
         If the journal is another study's, or another process works on it.
     """
 
-    def __init__(self, path, digest, n_values):
+    def __init__(self, path, digest, n_values, replace=False):
         self.path, self.layout = Path(path), struct.Struct(f"<q{n_values}di{MESSAGE}s")
         self.size = self.layout.size + 4
-        self.header = f"evolve-journal 1 {digest} {n_values}\n".encode()
+        self.header = f"evolve-journal 2 {digest} {n_values}\n".encode()
         self.file = open(self.path, "a+b")
-        try:
-            fcntl.flock(self.file, fcntl.LOCK_EX | fcntl.LOCK_NB)
-        except OSError as error:
-            self.file.close()
-            raise ConfigError(f"{self.path}: another process works on this study") from error
+        self._lock()
         self.synced = time.monotonic()
-        self._start()
+        self._start(replace)
 
-    def _start(self):
+    def _lock(self):
+        start = time.monotonic()
+        while True:
+            try:
+                return fcntl.flock(self.file, fcntl.LOCK_EX | fcntl.LOCK_NB)
+            except OSError as error:
+                if time.monotonic() - start > PATIENCE:
+                    self.file.close()
+                    raise ConfigError(f"{self.path}: another process works on this study") from error
+            time.sleep(0.05)
+
+    def _start(self, replace):
         """Check the header, cut what is broken at the end."""
         self.file.seek(0)
         head = self.file.read(len(self.header))
@@ -58,11 +75,11 @@ class Journal:
             self.file.write(self.header)
         elif head != self.header:
             whole = self.header.startswith(head)
-            if not whole:
+            if not whole and not replace:
                 self.close()
                 raise ConfigError(
-                    f"{self.path}: was written by another study, or the study has changed since; "
-                    "give --replace to start afresh, or another output"
+                    f"{self.path}: was written by another study or version, or the study has "
+                    "changed since; give --replace to start afresh, or another output"
                 )
             self.file.truncate(0)
             self.file.write(self.header)
@@ -84,9 +101,10 @@ class Journal:
 
     def add(self, index, values, code, message=""):
         """Append a record."""
-        text = message.encode()[:MESSAGE]
+        text = clipped(message).encode()
         body = self.layout.pack(index, *values, code, text)
         self.file.write(body + zlib.crc32(body).to_bytes(4, "little"))
+        self.file.flush()
         if time.monotonic() - self.synced > SYNC:
             self.sync()
 

@@ -72,6 +72,18 @@ def _known(word, words, what):
         raise ConfigError(f'"{word}" is no {what}; allowed: {FORMS}{hint}')
 
 
+def uninterrupted(history):
+    """A history as it is; Ctrl-C, which `integrate` turns into an end, goes on to the study.
+
+    Raises
+    ------
+    KeyboardInterrupt
+    """
+    if history.outcome == "interrupted":
+        raise KeyboardInterrupt
+    return history
+
+
 def value_of(history, result):
     """The number of a history that a result means; NaN where it has none.
 

@@ -9,7 +9,7 @@ import numpy as np
 
 from evolve.config import Config, read_config
 from evolve.config.draws import Draws, number_and_unit, read_draws
-from evolve.config.read import parse_toml
+from evolve.config.read import config_of_parts, parse_toml
 from evolve.config.words import nearest, shown
 from evolve.errors import ConfigError
 from evolve.studies.results import parse_result
@@ -110,7 +110,7 @@ class _Problems:
         self.problems.append(f"{self.name}: {path}{value}: {reason}")
 
 
-def read_study(path, needs=("keep",)):
+def read_study(path, needs=("keep",), allow_code=False):
     """Read and check a study file.
 
     Parameters
@@ -118,6 +118,8 @@ def read_study(path, needs=("keep",)):
     path : str or Path
     needs : sequence of str
         The tables that must be there.
+    allow_code : bool
+        Whether the config may name a law in a Python file.
 
     Returns
     -------
@@ -145,7 +147,7 @@ def read_study(path, needs=("keep",)):
         found.problem("config", 'allowed: one of config = "FILE" and [base]')
     if found.problems:
         raise ConfigError(found.problems)
-    base = _base(path, raw)
+    base = _base(path, raw, allow_code)
     axes = tuple(
         axis for key, written in raw.get("vary", {}).items()
         if (axis := _axis(found, key, written))
@@ -168,14 +170,14 @@ def read_study(path, needs=("keep",)):
     return study
 
 
-def _base(path, raw):
+def _base(path, raw, allow_code):
     if "base" in raw:
         if not isinstance(raw["base"], dict):
             raise ConfigError(f"{path}: base: allowed: a table with the keys of a config")
-        return read_config(raw["base"])
+        return config_of_parts(raw["base"], {}, path.parent, f"{path} [base]", allow_code)
     if not isinstance(raw["config"], str):
         raise ConfigError(f"{path}: config = {shown(raw['config'])}: allowed: the path of a config")
-    return read_config(path.parent / raw["config"])
+    return read_config(path.parent / raw["config"], allow_code=allow_code)
 
 
 def _axis(found, key, written):

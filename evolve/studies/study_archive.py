@@ -1,5 +1,6 @@
 """The archive of a study: arrays over its axes, axes as dimension scales."""
 
+from importlib.util import find_spec
 from typing import NamedTuple
 
 import numpy as np
@@ -7,6 +8,7 @@ import numpy as np
 from evolve.archive.digest import digest_of
 from evolve.archive.paths import check_output, whole_file
 from evolve.errors import ArchiveError
+from evolve.history.history import present_versions
 from evolve.studies.results import OUTCOMES
 
 FORMAT, LAYOUT = "evolve-study", 1
@@ -48,13 +50,7 @@ class StudyResult(NamedTuple):
     @classmethod
     def of(cls, study, values, codes, messages):
         """From rows by the points' numbers."""
-        shape = study.shape
-        scales = [
-            Scale(axis.key, axis.numbers if axis.unit or _numeric(axis) else np.array(axis.values), axis.unit)
-            for axis in study.axes
-        ]
-        if study.draws:
-            scales.append(Scale("draw", np.arange(study.draws.count), ""))
+        shape, scales = study.shape, scales_of(study)
         return cls(
             scales,
             {r.name: values[:, n].reshape(shape) for n, r in enumerate(study.keep)},
@@ -70,8 +66,22 @@ class StudyResult(NamedTuple):
         return len(self.messages)
 
 
+def scales_of(study):
+    """The axes of a study as list of Scale, the draws last."""
+    scales = [
+        Scale(axis.key, axis.numbers if axis.unit or _numeric(axis) else np.array(axis.values), axis.unit)
+        for axis in study.axes
+    ]
+    return scales + ([Scale("draw", np.arange(study.draws.count), "")] if study.draws else [])
+
+
 def _numeric(axis):
     return all(isinstance(value, (int, float)) for value in axis.values)
+
+
+def study_versions():
+    """Versions of what computes the histories of a study here; numba's only if it is there."""
+    return dict(present_versions(*["numba"] * (find_spec("numba") is not None)))
 
 
 def write_study(result, path, replace=False):
@@ -102,6 +112,9 @@ def _write(file, result):
 
     file.attrs["format"], file.attrs["layout"] = FORMAT, np.int64(LAYOUT)
     file.attrs["evolve_version"] = __version__
+    versions = study_versions() | {"h5py": h5py.__version__, "HDF5": h5py.version.hdf5_version}
+    for name, version in versions.items():
+        file.attrs[f"{name}_version"] = version
     file.attrs["title"], file.attrs["note"] = result.title, result.note
     file.attrs["study_digest"] = result.digest
     file.create_dataset("study", data=result.text, dtype=h5py.string_dtype())

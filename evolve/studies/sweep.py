@@ -1,23 +1,26 @@
 """A sweep: one history a point of a study, what is kept of it, one archive."""
 
-from concurrent.futures import ProcessPoolExecutor
+import json
+from functools import partial
+from hashlib import sha256
+from itertools import islice
 from pathlib import Path
 
 import numpy as np
 
-from evolve.archive.paths import check_output
-from evolve.config.read import config_of_parts
-from evolve.errors import EvolveError, MissingExtra
-from evolve.integrate import integrate
+from evolve import __version__
+from evolve.archive.paths import check_output, whole_file
+from evolve.archive.write import archive_bytes
+from evolve.errors import ConfigError
+from evolve.studies.blocks import REFUSED, Pace, Task, computed, parts_of
 from evolve.studies.journal import Journal
-from evolve.studies.many import AHEAD, in_order, quiet_worker
-from evolve.studies.results import OUTCOMES, value_of
+from evolve.studies.results import value_of
 from evolve.studies.study import read_study
-from evolve.studies.study_archive import StudyResult, write_study
+from evolve.studies.study_archive import StudyResult, study_versions, write_study
 
-BLOCK = 16
-"""Points a worker is given at once."""
-REFUSED = OUTCOMES.index("refused")
+MANY = 1000
+"""From so many points on a study takes the compiled engine, where there is one: its first
+compilation lasts as long as some hundred histories in plain Python."""
 
 
 def sweep(study, output=None, workers=1, cluster=None, replace=False, progress=None):
@@ -35,7 +38,7 @@ def sweep(study, output=None, workers=1, cluster=None, replace=False, progress=N
     replace : bool
         Whether an existing archive, and a journal of another study, may be replaced.
     progress : callable, optional
-        Called with the number of points done.
+        Called with the number of points done, first with those done before.
 
     Returns
     -------
@@ -46,41 +49,54 @@ def sweep(study, output=None, workers=1, cluster=None, replace=False, progress=N
     ------
     ConfigError
         For a study that is wrong or has changed, or an output that cannot be written.
+    MachineError
+        If workers die; what was done is kept.
     """
     study = study if hasattr(study, "axes") else read_study(study)
-    values = np.full((study.size, len(study.keep)), np.nan)
-    codes = np.zeros(study.size, dtype=np.int16)
-    messages = {}
-
-    def note(index, numbers, code, message):
-        values[index], codes[index] = numbers, code
-        if message:
-            messages[index] = message
-
+    if workers < 1:
+        raise ConfigError(f"workers = {workers}: allowed: 1 or more")
+    found = _Found(study)
     if output is None:
-        _compute(study, range(study.size), workers, cluster, note, progress)
-    else:
-        check_output(output, replace)
-        path = journal_path(output)
-        if replace:
-            path.unlink(missing_ok=True)
-        with Journal(path, study.digest, len(study.keep)) as journal:
-            for record in journal.records():
-                note(*record)
-            left = np.nonzero(codes == 0)[0].tolist()
-            if progress:
-                progress(study.size - len(left))
-
-            def write(index, numbers, code, message):
-                note(index, numbers, code, message)
-                journal.add(index, numbers, code, message)
-
-            _compute(study, left, workers, cluster, write, progress)
-    result = StudyResult.of(study, values, codes, messages)
-    if output is not None:
+        if study.histories:
+            raise ConfigError("keep.histories: histories are written beside an output; give one")
+        for row in _rows(study, found.left(), workers, cluster, progress):
+            found.note(row.index, *_numbers(row, study))
+        return found.result()
+    check_output(output, replace)
+    with Journal(journal_path(output), journal_digest(study), len(study.keep), replace) as journal:
+        _resumed(study, found, journal, Path(output), (workers, cluster), progress)
+        result = found.result()
         write_study(result, output, replace)
         journal_path(output).unlink(missing_ok=True)
     return result
+
+
+def _resumed(study, found, journal, output, where, progress):
+    for record in journal.records():
+        found.note(*record)
+    folder = histories_folder(output)
+    if study.histories:
+        folder.mkdir(exist_ok=True)
+        found.forget(lambda index: not _history_path(folder, index).is_file())
+    for row in _rows(study, found.left(), *where, progress):
+        if study.histories and row.value:
+            with whole_file(_history_path(folder, row.index)) as part:
+                part.write_bytes(row.value[1])
+        record = row.index, *_numbers(row, study)
+        found.note(*record)
+        journal.add(*record)
+
+
+def _numbers(row, study):
+    """(results, end, reason) of a row; NaN throughout where there is no history."""
+    values = row.value[0] if row.value else [float("nan")] * len(study.keep)
+    return values, row.code, row.message
+
+
+def journal_digest(study):
+    """Of the study and of what its bits rest on: a journal of other versions does not go on."""
+    versions = json.dumps([__version__, study_versions()], sort_keys=True)
+    return sha256(f"{study.digest} {versions}".encode()).hexdigest()
 
 
 def journal_path(output):
@@ -89,68 +105,69 @@ def journal_path(output):
     return output.with_name(output.name + ".journal")
 
 
-def _compute(study, indices, workers, cluster, note, progress):
-    parts = (study.base.raw, study.base.files, study.base.folder, study.base.name,
-             study.base.allow_code)  # fmt: skip
-    done = study.size - len(indices)
-    for rows in _mapped(_blocks(study, indices), parts, study.keep, workers, cluster):
-        for row in rows:
-            note(*row)
+def histories_folder(output):
+    """The folder beside an archive with the archive of each history, if they are kept."""
+    output = Path(output)
+    return output.with_name(output.stem + "_histories")
+
+
+def _history_path(folder, index):
+    return folder / f"{index:08d}.h5"
+
+
+class _Found:
+    """What is known of a study's points so far."""
+
+    def __init__(self, study):
+        self.study = study
+        self.values = np.full((study.size, len(study.keep)), np.nan)
+        self.codes = np.zeros(study.size, dtype=np.int16)
+        self.messages = {}
+
+    def note(self, index, numbers, code, message):
+        self.values[index], self.codes[index] = numbers, code
+        if message:
+            self.messages[index] = message
+
+    def forget(self, lost):
+        """Take back those points that have a history and of which `lost(index)` is true."""
+        for index in np.nonzero((self.codes != 0) & (self.codes != REFUSED))[0].tolist():
+            if lost(index):
+                self.codes[index] = 0
+                self.messages.pop(index, None)
+
+    def left(self):
+        """Numbers of the points without an answer, ndarray."""
+        return np.nonzero(self.codes == 0)[0]
+
+    def result(self):
+        return StudyResult.of(self.study, self.values, self.codes, self.messages)
+
+
+def _rows(study, left, workers, cluster, progress):
+    pace = Pace()
+    reduce = partial(kept, keep=study.keep, histories=study.histories)
+    task = Task(parts_of(study.base), reduce, study.size >= MANY)
+    done = study.size - len(left)
+    if progress:
+        progress(done)
+    for rows in computed(task, _blocks(study, left, pace), pace, workers, cluster):
+        yield from rows
         done += len(rows)
         if progress:
             progress(done)
 
 
-def _blocks(study, indices):
-    """Blocks of (indices, changes), made as they are needed."""
-    for first in range(0, len(indices), BLOCK):
-        some = list(indices[first : first + BLOCK])
-        yield some, list(study.points(some))
-
-
-def _mapped(blocks, parts, keep, workers, cluster):
-    """Rows of each block, in order, here or in other processes."""
-    if cluster:
-        with _client(cluster) as client:
-            futures = (client.submit(run_block, parts, keep, *block, pure=False) for block in blocks)
-            ahead = AHEAD * max(sum(client.nthreads().values()), 1)
-            yield from _listed(futures, ahead)
-    elif workers == 1:
-        for block in blocks:
-            yield run_block(parts, keep, *block)
-    else:
-        with ProcessPoolExecutor(workers, initializer=quiet_worker) as pool:
-            futures = (pool.submit(run_block, parts, keep, *block) for block in blocks)
-            yield from _listed(futures, AHEAD * workers)
-
-
-def _listed(futures, ahead):
-    for row in in_order(futures, ahead):
-        yield [row]
-
-
-def _client(address):
-    try:
-        from distributed import Client
-    except ImportError as error:
-        raise MissingExtra("dask[distributed]", "cluster") from error
-    return Client(address)
-
-
-def run_block(parts, keep, indices, changes):
-    """Rows (index, values, code, message) of some points; what a worker does.
-
-    A point that makes no config, or whose pair cannot start, is "refused"; its values are NaN.
-    """
-    base = config_of_parts(*parts)
-    return [_run_point(base, keep, index, change) for index, change in zip(indices, changes, strict=True)]
-
-
-def _run_point(base, keep, index, change):
-    try:
-        history = integrate(base.with_values(change))
-    except EvolveError as error:
-        return index, [float("nan")] * len(keep), REFUSED, str(error)
+def kept(history, keep, histories):
+    """(results, bytes of the history's archive if it is wanted) of one history."""
     values = [value_of(history, result) for result in keep]
-    message = "" if history.complete else history.message
-    return index, values, OUTCOMES.index(history.outcome), message
+    return values, archive_bytes(history) if histories else b""
+
+
+def _blocks(study, indices, pace):
+    """(indices, changes) of blocks, made as they are needed."""
+    changes, first = study.points(indices.tolist()), 0
+    while first < len(indices):
+        some = indices[first : first + pace.size].tolist()
+        yield some, list(islice(changes, len(some)))
+        first += len(some)

@@ -13,7 +13,7 @@ from evolve.orbit.lobes import lobe_fraction
 from evolve.stars import MODELS
 from evolve.system.equations import write
 from evolve.system.layout import OTHER, layout
-from evolve.system.plan import choose_laws, parameters_of, plan_of
+from evolve.system.plan import Chosen, choose_laws, parameters_of, plan_of
 
 OVERFILL = 1e-3
 """A start overfilled by more than this share of the lobe is refused."""
@@ -31,9 +31,21 @@ class Switches(NamedTuple):
     braking_B: bool = False
 
 
+_plans = {}
+
+
 @lru_cache(maxsize=64)
 def _code(text):
     return compile(text, "<equations>", "exec")
+
+
+def _written(plan):
+    """Layout, equations and class of quantities of a plan: made once for configs of one kind."""
+    key = plan._replace(components=tuple(plan.components.items()))
+    if key not in _plans:
+        slots = layout(plan)
+        _plans[key] = slots, write(plan), namedtuple("Quantities", slots.quantities)
+    return _plans[key]
 
 
 class Pair:
@@ -78,10 +90,8 @@ class Pair:
         }
         self.laws = choose_laws(config)
         self.plan, self.functions = plan_of(config, self.laws)
-        self.layout = layout(self.plan)
-        self.parameters = parameters_of(config, self.laws, self.plan, self.star_keys)
-        self.equations = write(self.plan)
-        self.Quantities = namedtuple("Quantities", self.layout.quantities)
+        self.layout, self.equations, self.Quantities = _written(self.plan)
+        self.parameters = parameters_of(config, self.laws, self.layout, self.star_keys)
         namespace = {
             name: function
             for name, function in self.functions.items()
@@ -189,6 +199,13 @@ def start_state(pair, carried=None):
     for c in pair.plan.order:
         if not carried and radii[c] > lobes[c] * (1.0 + OVERFILL):
             raise ConfigError(_overfilled(pair, c, radii[c], lobes[c], masses, fractions))
+    for c in pair.plan.order:
+        capture = pair.laws.capture[c]
+        if isinstance(capture, Chosen) and not radii[c] and not capture.keys.speed:
+            raise ConfigError(
+                f"{pair.config.name}: wind.{c}.speed is missing: a component without a radius has "
+                f"no escape speed that {capture.name} could take; allowed: a speed above 0 km/s"
+            )
     state = [*masses.values(), angular_momentum(*masses.values(), separation, eccentricity)]
     if pair.plan.eccentric:
         state.append(eccentricity / sqrt(1.0 - eccentricity**2))

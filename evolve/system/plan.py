@@ -10,7 +10,7 @@ from evolve.laws import find
 from evolve.laws.acceptance import accepted, burning_share, radiative_efficiency
 from evolve.laws.contract import NoKeys
 from evolve.stars import MODELS
-from evolve.system.layout import OTHER, Plan, PlanOfComponent, layout
+from evolve.system.layout import OTHER, Plan, PlanOfComponent
 
 
 class Chosen(NamedTuple):
@@ -233,11 +233,12 @@ def _imports(functions):
     )
 
 
-def parameters_of(config, laws, plan, star_keys):
+def parameters_of(config, laws, slots, star_keys):
     """The values that go with a plan, in the order its text unpacks them.
 
     Parameters
     ----------
+    slots : evolve.system.layout.Layout
     star_keys : dict
         "A" and "B" -> the Keys of the star's model.
 
@@ -272,7 +273,6 @@ def parameters_of(config, laws, plan, star_keys):
     for way, (weight, chosen) in laws.expulsion.items():
         settings[f"weight_{_identifier(way)}"] = weight
         parts[f"expulsion_keys_{_identifier(way)}"] = chosen.keys
-    slots = layout(plan)
     parts["settings"] = tuple(float(settings[name]) for name in slots.settings)
     return tuple(NoKeys() if parts[name] is None else parts[name] for name in slots.parameters)
 

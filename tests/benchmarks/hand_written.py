@@ -6,8 +6,8 @@ n = 3/2 donor. Scalar math, three variables, two calls of solve_ivp with LSODA. 
 file, keeps no ledger and no columns, and its equations cannot be changed without editing it.
 """
 
+import math
 from bisect import bisect_right
-from math import exp, log, log10, sqrt
 
 import numpy as np
 from scipy.integrate import solve_ivp
@@ -30,8 +30,12 @@ def tables(path):
     return knots, radius, light
 
 
-def history(path, rtol=1e-6, end=1e10, fill=0.98):
-    """Both stretches (braking on, braking off) of the history; returns the two solutions."""
+def history(path, rtol=1e-6, end=1e10, fill=0.98, maths=math):
+    """Both stretches (braking on, braking off) of the history; returns the two solutions.
+
+    `maths` may be numpy: what people write who start from arrays.
+    """
+    exp, log, log10, sqrt = maths.exp, maths.log, maths.log10, maths.sqrt
     knots, radius_table, light_table = tables(path)
 
     def equilibrium(m):
@@ -47,7 +51,7 @@ def history(path, rtol=1e-6, end=1e10, fill=0.98):
         return 0.49 * c * c / (0.6 * c * c + log(1 + c))
 
     def right_side(t, y, braking):
-        ln_m, ln_a, ln_r = y.tolist()
+        ln_m, ln_a, ln_r = y if maths is np else y.tolist()
         ln_m = min(max(ln_m, -4.6), 0.0)  # trial states of LSODA are off by hundreds
         ln_r = min(max(ln_r, -5.0), 5.0)
         m, a, r = exp(ln_m), exp(min(max(ln_a, -5.0), 9.0)), exp(ln_r)

@@ -295,15 +295,3 @@ def test_sources_that_are_none():
         read_config({"A": {"mass": None}})
     with pytest.raises(ConfigError, match="3: a number as a key; allowed: a text"):
         read_config({3: {}})
-
-
-def test_capture_of_a_wind_whose_speed_nobody_knows():
-    point = {"mass": 1.0, "star": "compact", "kind": "point-mass"}
-    pair = {
-        "A": point, "B": point, "orbit": {"period": "1 d"},
-        "wind": {"A": {"law": "constant", "rate": 1e-9, "capture": "bondi-hoyle"}},
-    }  # fmt: skip
-    with pytest.raises(ConfigError, match="wind.A.speed: missing; a point mass has no escape speed"):
-        read_config(pair)
-    pair["wind"]["A"]["speed"] = "500 km/s"
-    assert read_config(pair)

@@ -252,3 +252,33 @@ def test_contact_at_periastron_rounds_the_orbit_at_constant_momentum():
     assert after == pytest.approx(before * (1 - e * e), rel=1e-9)
     assert history["angular_momentum"][row + 1] == pytest.approx(history["angular_momentum"][row], rel=1e-12)
     assert history.at("contact[2]")["time"] > history.at("circularised")["time"]
+
+
+# What cannot start ----------------------------------------------------------------------------
+
+
+def test_a_captured_wind_needs_a_speed_where_there_is_no_escape_speed():
+    point = {"star": "compact", "kind": "point-mass", "mass": 3.0}
+    wind = {"law": "constant", "rate": 1e-9, "capture": "bondi-hoyle"}
+    config = {
+        "A": point, "B": {"star": "dwarf", "mass": 0.5}, "orbit": {"period": "2 d"},
+        "wind": {"A": wind}, "end": {"time": "1 Myr"},
+    }  # fmt: skip
+    with pytest.raises(evolve.ConfigError, match="wind.A.speed"):
+        evolve.run(config)
+    config["wind"]["A"]["speed"] = "1000 km/s"
+    assert evolve.run(config).ledger.mass["captured_A"].sum() > 0.0
+
+
+def test_a_law_that_fails_at_the_start_is_one_message(tmp_path):
+    (tmp_path / "own.py").write_text(
+        "def late(star, other, orbit, keys):\n"
+        '    """A torque [solMass solRad2 / yr2]."""\n'
+        "    return -1e-5 / (0.0 if star.mass == 0.51 else 1.0)\n"
+    )
+    (tmp_path / "own.toml").write_text(
+        '[A]\nstar = "dwarf"\nmass = 0.51\n[B]\nstar = "white-dwarf"\nmass = 0.8\n'
+        '[orbit]\nperiod = "8 h"\n[braking]\nlaw = "own.py:late"\n'
+    )
+    with pytest.raises(evolve.ConfigError, match="fail at the start: ZeroDivisionError"):
+        evolve.run(tmp_path / "own.toml", allow_code=True)

@@ -1,6 +1,5 @@
 """What the tests of the laws share: sample states, keys, and laws compiled by numba."""
 
-import types
 from math import isfinite
 
 import pytest
@@ -48,15 +47,9 @@ def make_orbit(mass_a, mass_b, separation, eccentricity=0.0):
     return Orbit(separation, eccentricity, omega, momentum, total)
 
 
-def compiled(function, done=None):
+def compiled(function):
     """A function and every plain function it calls, compiled by numba."""
-    numba = pytest.importorskip("numba")
-    done = {} if done is None else done
-    if function not in done:
-        names = dict(function.__globals__)
-        for name in function.__code__.co_names:
-            if isinstance(names.get(name), types.FunctionType):
-                names[name] = compiled(names[name], done)
-        copy = types.FunctionType(function.__code__, names, function.__name__)
-        done[function] = numba.njit(copy, error_model="numpy")
-    return done[function]
+    pytest.importorskip("numba")
+    from evolve.integrate.engine import jitted
+
+    return jitted(function)

@@ -1,6 +1,6 @@
 """What the tests of the stars share: one or more samples of every model, compiled structures."""
 
-import types
+
 from typing import NamedTuple
 
 import pytest
@@ -93,18 +93,12 @@ def states(sample, steps=7):
                 yield mass, factor * equilibrium or 1.0, phase
 
 
-def compiled(function, done=None):
+def compiled(function):
     """A function and every plain function it calls, compiled by numba."""
-    numba = pytest.importorskip("numba")
-    done = {} if done is None else done
-    if function not in done:
-        names = dict(function.__globals__)
-        for name in function.__code__.co_names:
-            if isinstance(names.get(name), types.FunctionType):
-                names[name] = compiled(names[name], done)
-        copy = types.FunctionType(function.__code__, names, function.__name__)
-        done[function] = numba.njit(copy, error_model="numpy")
-    return done[function]
+    pytest.importorskip("numba")
+    from evolve.integrate.engine import jitted
+
+    return jitted(function)
 
 
 def with_arrays(keys):

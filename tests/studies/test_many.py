@@ -25,7 +25,9 @@ def merger_time(history):
 
 @pytest.mark.parametrize("workers", [1, 2])
 def test_results_come_in_order_and_a_bad_config_is_one_failure(workers):
-    found = list(evolve.run_many(map(pair, MASSES), workers=workers, reduce=merger_time))
+    found = list(
+        evolve.run_many(map(pair, MASSES), workers=workers, reduce=merger_time, engine="plain")
+    )
     assert [outcome.index for outcome in found] == list(range(5))
     assert found[2].value is None and "A.mass" in found[2].error
     good = [outcome.value for outcome in found if not outcome.error]

@@ -1,23 +1,19 @@
-"""Sweeps: Peters over a grid, the same bits by any road, resumption after a kill, refusals."""
+"""Sweeps: Peters over a grid, the same bits by any road, failed points, refusals."""
 
 import hashlib
 import os
-import signal
-import subprocess
-import sys
 import textwrap
-import time
 from pathlib import Path
 
 import numpy as np
 import pytest
 
+import evolve
 from evolve.constants import C, G
 from evolve.errors import ConfigError
-from evolve.studies.journal import Journal
 from evolve.studies.study import read_study
 from evolve.studies.study_archive import open_study
-from evolve.studies.sweep import journal_path, sweep
+from evolve.studies.sweep import sweep
 
 WAVES = """
     title = "Waves only"
@@ -54,6 +50,14 @@ BRAKED = """
 """
 
 
+SEARCH = WAVES[: WAVES.index("[vary]")] + """[vary]
+    "orbit.separation" = { from = "1 Rsun", to = "2 Rsun", count = 3 }
+    [observed]
+    time = ["0.1 Gyr", "1 Myr"]
+    period = ["3 h", "0.01 h"]
+"""
+
+
 def write(folder, text, name="study.toml"):
     path = folder / name
     path.write_text(textwrap.dedent(text))
@@ -86,75 +90,21 @@ def test_any_number_of_workers_gives_the_same_bytes(tmp_path):
 
 
 def test_a_dask_cluster_gives_the_same_bytes(tmp_path):
+    """A scheduler and two worker processes, as `dask scheduler` and `dask worker` start them."""
     distributed = pytest.importorskip("distributed")
     study = write(tmp_path, BRAKED.replace("count = 40", "count = 4"))
+    search = write(tmp_path, SEARCH, "search.toml")
     sweep(study, tmp_path / "here.h5")
     with distributed.LocalCluster(
         n_workers=2, threads_per_worker=1, processes=True, dashboard_address=None,
         host="127.0.0.1", silence_logs=50,
     ) as cluster:  # fmt: skip
-        sweep(study, tmp_path / "there.h5", cluster=cluster.scheduler_address)
+        address = cluster.scheduler_address
+        sweep(study, tmp_path / "there.h5", cluster=address)
+        there = evolve.origin(search, cluster=address).origins
     assert sha(tmp_path / "here.h5") == sha(tmp_path / "there.h5")
-
-
-def start(study, output):
-    command = [sys.executable, "-m", "evolve", "sweep", str(study), "-o", str(output), "--quiet"]
-    return subprocess.Popen(command, stdout=subprocess.PIPE, stderr=subprocess.PIPE)
-
-
-@pytest.mark.slow
-def test_killed_at_random_moments_it_resumes_to_the_same_bytes(tmp_path):
-    study = write(tmp_path, BRAKED)
-    sweep(study, tmp_path / "whole.h5")
-    output, rng, kills = tmp_path / "killed.h5", np.random.default_rng(3), 0
-    while kills < 10 and not output.exists():
-        process = start(study, output)
-        time.sleep(rng.uniform(0.6, 2.2))
-        if process.poll() is None:
-            process.send_signal(signal.SIGKILL)
-            kills += 1
-        process.communicate()
-    if not output.exists():
-        assert start(study, output).wait() == 0
-    assert kills >= 3
-    assert sha(output) == sha(tmp_path / "whole.h5")
-
-
-def test_a_cut_or_flipped_record_is_computed_again(tmp_path):
-    study = read_study(write(tmp_path, WAVES))
-    output = tmp_path / "x.h5"
-    sweep(study, output)
-    whole = sha(output)
-    with Journal(journal_path(output), study.digest, len(study.keep)) as journal:
-        result = open_study(output)
-        flat = np.stack([result.values[r.name].ravel() for r in study.keep], axis=1)
-        for index in range(10):
-            journal.add(index, flat[index].tolist(), int(result.codes.ravel()[index]))
-    path = journal_path(output)
-    data = bytearray(path.read_bytes())
-    data[len(data) // 2] ^= 0xFF
-    path.write_bytes(bytes(data[:-7]))
-    output.unlink()
-    sweep(study, output)
-    assert sha(output) == whole
-
-
-def test_a_study_that_changed_meanwhile_is_noticed(tmp_path):
-    study = read_study(write(tmp_path, WAVES))
-    output = tmp_path / "x.h5"
-    Journal(journal_path(output), study.digest, len(study.keep)).close()
-    changed = read_study(write(tmp_path, WAVES.replace("1.4 Msun", "1.5 Msun"), "other.toml"))
-    with pytest.raises(ConfigError, match="has changed"):
-        sweep(changed, output)
-    sweep(changed, output, replace=True)
-
-
-def test_two_processes_do_not_work_on_one_study(tmp_path):
-    study = read_study(write(tmp_path, WAVES))
-    output = tmp_path / "x.h5"
-    with Journal(journal_path(output), study.digest, len(study.keep)):
-        with pytest.raises(ConfigError, match="another process"):
-            sweep(study, output)
+    here = evolve.origin(search).origins
+    assert here and [entry.start for entry in here] == [entry.start for entry in there]
 
 
 def test_a_failing_point_is_recorded_and_the_rest_goes_on(tmp_path):
@@ -164,6 +114,38 @@ def test_a_failing_point_is_recorded_and_the_rest_goes_on(tmp_path):
     refused = result.codes == result.codes.max()
     assert np.isnan(result.values["contact.time"][refused]).all()
     assert "mass" in next(iter(result.messages.values()))
+
+
+def test_whole_histories_are_kept_beside_it_if_asked_for(tmp_path):
+    """Each is the archive that `run` writes of the same config."""
+    text = WAVES.replace('"count.merger"]', '"count.merger"]\n    histories = true')
+    text = text.replace('"5 Msun"', '"-5 Msun"')
+    result = sweep(write(tmp_path, text), tmp_path / "w.h5", workers=2)
+    files = sorted((tmp_path / "w_histories").iterdir())
+    assert [path.name for path in files] == [f"{n:08d}.h5" for n in range(10)]  # not the refused
+    for number in (0, 7):
+        history = evolve.open_history(files[number])
+        assert history["time"][-1] == result.values["merger.time"].ravel()[number]
+    alone = evolve.run(read_study(tmp_path / "study.toml").base.with_values(
+        {"A.mass": "0.6 Msun", "orbit.separation": "0.5 Rsun"}))  # fmt: skip
+    alone.save(tmp_path / "alone.h5")
+    assert sha(tmp_path / "alone.h5") == sha(files[0])
+
+
+def test_python_functions_bear_the_names_of_the_commands(tmp_path):
+    result = evolve.sweep(write(tmp_path, WAVES), output=tmp_path / "w.h5")
+    assert evolve.open_study(tmp_path / "w.h5").digest == result.digest
+    assert callable(evolve.origin)
+
+
+def test_a_dead_scheduler_is_one_sentence(tmp_path):
+    distributed = pytest.importorskip("distributed")
+    from dask import config
+
+    with config.set({"distributed.comm.timeouts.connect": "300ms"}):
+        with pytest.raises(evolve.MachineError, match="no dask scheduler answers"):
+            sweep(write(tmp_path, WAVES), tmp_path / "w.h5", cluster="tcp://127.0.0.1:9")
+    assert distributed and not (tmp_path / "w.h5").exists()
 
 
 def test_draws_are_the_same_at_each_grid_point(tmp_path):

@@ -1,0 +1,5 @@
+"""The page: histories told in one self-contained HTML file."""
+
+from evolve.page.report import report
+
+__all__ = ["report"]
