@@ -66,9 +66,12 @@ def _reached(title, answer, config):
         f"{quantity(answer.time, 'yr', 6)} (+- {quantity(answer.time_error, 'yr', 2)} by tolerance)",
         "",
     ]
-    lines += aligned(["what brought it there", "share"], [
-        [_words(entry), f"{100 * share:.3g} %"] for entry, share in answer.shares.items()
-    ])  # fmt: skip
+    if answer.shares:
+        lines += aligned(["what brought it there", "share"], [
+            [_words(entry), f"{100 * share:.3g} %"] for entry, share in answer.shares.items()
+        ])  # fmt: skip
+    else:
+        lines.append("It is in contact from the start.")
     lines += ["", *_state_lines("at contact", answer.state)]
     return lines, _result(answer)
 

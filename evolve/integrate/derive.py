@@ -14,7 +14,7 @@ from evolve.constants import (
     G,
 )
 from evolve.laws.acceptance import radiative_efficiency
-from evolve.laws.disc import critical_rate, critical_rate_irradiated, disc_radius
+from evolve.laws.disc import critical_rate, critical_rate_irradiated, disc_radius, forms_disc
 from evolve.laws.waves import strain_amplitude
 from evolve.orbit.kepler import mass_function, velocity_semi_amplitude
 from evolve.system.layout import OTHER
@@ -186,7 +186,7 @@ def _critical_rate(pair, q, by_b):
     """Rate above which a disc around a compact accretor is stable [solMass/yr], or None.
 
     Irradiated around neutron stars and black holes; of helium if the donor is a white dwarf or
-    a helium star.
+    a helium star. NaN where the stream strikes the accretor: then there is no disc.
     """
     found = None
     for c, chosen in (("A", by_b), ("B", ~by_b)):
@@ -200,5 +200,7 @@ def _critical_rate(pair, q, by_b):
             rate = critical_rate(mass, radius, helium=helium)
         else:
             rate = critical_rate_irradiated(mass, radius)
+        rows = zip(q[f"mass_{donor}"] / mass, q["separation"], q[f"radius_{c}"], strict=True)
+        rate = np.where([forms_disc(*row) for row in rows], rate, np.nan)
         found = np.where(chosen, rate, np.nan if found is None else found)
     return found

@@ -30,7 +30,7 @@ GOOD = (
 def sentence(outcome, detail=""):
     """What an end means, for people, with the detail that is known."""
     words = SENTENCES[outcome]
-    return f"{words[:-1]}: {detail}." if detail else words
+    return f"{words[:-1]}: {detail.rstrip('.')}." if detail else words
 
 
 def exit_status(outcome):
