@@ -73,7 +73,7 @@ def watches_for(run):
         low, high = run.pair.mass_range(c)
         found.append(watch("validity", c, f"mass_{c}", log(low), -1, end="validity"))
         found.append(watch("validity", c, f"mass_{c}", log(high), +1, end="validity"))
-    found.append(watch("merger", "", "merger", 0.0, +1, end="merger"))
+    found.append(watch("merger", "", "merger", -CONTACT_MARGIN, +1, end="merger"))
     if "eccentricity" in names and not run.inspiral:
         level = log(ROUND)
         found.append(watch("circularised", "", "eccentricity", level, -1, at_once=False))

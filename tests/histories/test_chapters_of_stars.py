@@ -55,7 +55,8 @@ STARTS = [(0.161, 0.5), (0.161, 0.7), (0.165, 1.0), (0.19, 1.0), (0.21, 1.0), (0
 def test_measured_pulsar_binaries_lie_near(days, mass):
     """Measured white dwarfs within 15 % of the model at their period. (The eccentric J2234+0611 at
     32 d, 0.298 +- 0.014, Stovall et al. 2019, from memory, lies 17 % above it: this relation is on
-    the light side of the published one throughout.) Below about 10 d no giant of this model ends, its smallest core being 0.16 solar masses."""
+    the light side of the published one throughout.) Below about 10 d no giant of this model ends, its smallest core being 0.16 solar
+    masses."""
     ends = np.array([
         (h["period"][-1] / 24.0, h["mass_A"][-1])
         for h in (giant(*start) for start in STARTS)

@@ -264,3 +264,15 @@ def test_a_puffed_up_star_falls_asleep_once():
     )  # fmt: skip
     assert history.outcome in ("time", "validity")
     assert history["fill_A"][-1] < 0.5
+
+
+def test_two_compact_stars_that_start_in_contact_have_merged():
+    """Also where a wind keeps them from being a pure inspiral."""
+    history = evolve.run(
+        {
+            "A": {"mass": 14.6, "star": "compact", "kind": "black-hole"},
+            "B": {"mass": 1.9, "star": "compact", "kind": "neutron-star"}, "orbit": {"contact": True},
+            "wind": {"A": {"law": "constant", "rate": 1e-13, "capture": 0.5}},
+        }
+    )  # fmt: skip
+    assert history.outcome == "merger" and history["time"][-1] < 1e-6
